@@ -23,6 +23,82 @@ class Reference:
 
 
 REFERENCES: dict[str, Reference] = {
-    "EXACT": Reference("Exact by definition: SI Brochure (2019); international yard and pound; gallon acts", "checked"),
-    "IUPAC21": Reference("IUPAC CIAAW, Standard atomic weights 2021 (abridged or conventional values)", "checked"),
+    "DE-TRADE-MONTHLY": Reference(
+        "German building-services trade monthly, a worked example to DIN 1988-300",
+        "secondary",
+    ),
+    "DE-WATER-USE": Reference(
+        "German water industry association, use per person and day, as reported by news items 2019 and 2023",
+        "secondary",
+    ),
+    "DIN1988-300": Reference(
+        "DIN 1988-300, peak flow of drinking-water installations, as a German building-services "
+        "glossary gives it",
+        "secondary",
+    ),
+    "EPA-SODIUM": Reference("US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006", "checked"),
+    "EU2020-2184": Reference(
+        "Directive (EU) 2020/2184 on the quality of water intended for human consumption",
+        "from memory",
+    ),
+    "EXACT": Reference(
+        "Exact by definition: SI Brochure (2019); international yard and pound; gallon acts",
+        "checked",
+    ),
+    "IPC2018-E": Reference(
+        "International Plumbing Code 2018, appendix E, tables E103.3(2) and E103.3(3)",
+        "secondary",
+    ),
+    "IUPAC21": Reference(
+        "IUPAC CIAAW, Standard atomic weights 2021 (abridged or conventional values)",
+        "checked",
+    ),
+    "NSPC-B54": Reference("National Standard Plumbing Code, table B.5.4", "checked"),
+    "OPERATOR-TEXT": Reference(
+        "Operator-training text on softener cycles and a copied chapter of an industrial water handbook",
+        "secondary",
+    ),
+    "REU2016": Reference(
+        "Residential End Uses of Water, Version 2 (Water Research Foundation, 2016)",
+        "from memory",
+    ),
+    "SALT-INSTITUTE": Reference(
+        "Salt producers' institute, table of sodium chloride solubility by temperature",
+        "checked",
+    ),
+    "TRADE-BACKWASH": Reference(
+        "A trade page and an equipment manual on backwash rate and water temperature",
+        "secondary",
+    ),
+    "TRADE-PRESS": Reference(
+        "Articles of the US water-treatment trade press on salt dose, capacity, flow limits and use",
+        "secondary",
+    ),
+    "TRADE-SIZING": Reference(
+        "Two independent trade pages on softener sizing: capacity by salt dose, iron rule, intervals",
+        "secondary",
+    ),
+    "TRINKWV2023": Reference("Trinkwasserverordnung of 20 June 2023", "secondary"),
+    "UFC3-240": Reference(
+        "US Department of Defense, UFC 3-240-13FN (25 May 2005), pages on softeners",
+        "checked",
+    ),
+    "UK-EFRA2018": Reference(
+        "House of Commons Environment, Food and Rural Affairs Committee, report on water, section on "
+        "reducing demand (2018)",
+        "checked",
+    ),
+    "US-DISTRICT": Reference(
+        "Softening best-practice list of a sewerage district in the US Midwest",
+        "checked",
+    ),
+    "USGS1441": Reference(
+        "USGS Circular 1441, Estimated use of water in the United States in 2015; its domestic-use page",
+        "secondary",
+    ),
+    "VAC590-900": Reference(
+        "Virginia Administrative Code 12VAC5-590-900, cation exchange softening",
+        "checked",
+    ),
+    "WHO-GDWQ": Reference("World Health Organization, Guidelines for Drinking-water Quality", "from memory"),
 }

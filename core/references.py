@@ -41,6 +41,7 @@ REFERENCES: dict[str, Reference] = {
         "Directive (EU) 2020/2184 on the quality of water intended for human consumption",
         "from memory",
     ),
+    "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
     "EXACT": Reference(
         "Exact by definition: SI Brochure (2019); international yard and pound; gallon acts",
         "checked",

@@ -1,0 +1,21 @@
+"""Units: what a kit prints or a report says, turned into any other unit of the same quantity.
+
+    >>> convert(300, "mg/L CaCO3", "gpg")
+    17.52535...
+    >>> convert(92, "mg/L", "mmol/L", quantity="calcium")
+    2.29552...
+    >>> find_unit("grains per gallon", "hardness").symbol
+    'gpg'
+
+Factors are kept at full precision; rounding is a matter of showing. Neither importing this package nor converting
+a plain number imports numpy.
+"""
+
+from __future__ import annotations
+
+from core.units.conversion import convert
+from core.units.lookup import QUANTITIES, find_unit, quantity_named, units_of
+from core.units.unit import Unit
+from core.units.water import HARDNESS_UNITS
+
+__all__ = ["HARDNESS_UNITS", "QUANTITIES", "Unit", "convert", "find_unit", "quantity_named", "units_of"]

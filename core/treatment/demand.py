@@ -2,7 +2,9 @@
 
     use_figures(region=None) -> tuple[UseFigure, ...]        published figures, .per_person in L/day
     use_figure(key) -> UseFigure
+    use_per_person(figure) -> L/day                          the figure of that key
     daily_volume(persons, per_person, softened_share=1) -> L/day
+    softened_volume(volume [L/day], softened_share=1) -> L/day
     daily_volume_from_meter(volume [L], days) -> L/day       the house's own meter, better than any figure
     average_persons(persons, guests, guest_days, away_days) -> persons
     softened_share(outdoor_share=0, toilet_share=0) -> share
@@ -83,6 +85,32 @@ def use_figure(key: str) -> UseFigure:
 def daily_volume(persons: Number, per_person: Number, softened_share: Number = 1.0) -> Number:
     """Water that passes the softener on an average day. [L/day]"""
     return persons * per_person * softened_share
+
+
+@formula(
+    "Use per person",
+    "a published figure, see the note",
+    unit="L/day",
+    takes={"figure": ""},
+    source="definition",
+    validity="A starting point where no meter was read.",
+)
+def use_per_person(figure: str) -> float:
+    """Published use per person of that key of `use_figures`. [L/day]"""
+    return use_figure(figure).per_person
+
+
+@formula(
+    "Softened volume",
+    "volume = use × share softened",
+    unit="L/day",
+    takes={"volume": "L/day", "softened_share": ""},
+    source="definition",
+)
+@broadcasts
+def softened_volume(volume: Number, softened_share: Number = 1.0) -> Number:
+    """Part of the use that passes the softener. [L/day]"""
+    return volume * softened_share
 
 
 @formula(

@@ -7,8 +7,7 @@
     >>> find_unit("grains per gallon", "hardness").symbol
     'gpg'
 
-Factors are kept at full precision; rounding is a matter of showing. Neither importing this package nor converting
-a plain number imports numpy.
+Factors are kept at full precision; rounding is a matter of showing. A plain number needs no numpy.
 """
 
 from __future__ import annotations

@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from numpy import float64
     from numpy.typing import ArrayLike, NDArray
 
+_LARGEST = 2**53  # whole numbers up to here are floats to the last digit
 _SAME = 1e-12  # two ratios closer than this are one conversion
 
 
@@ -46,7 +47,7 @@ def convert(value, from_unit, to_unit, quantity=None):  # type: ignore[no-untype
     Raises UnitError, AmbiguousUnit (with `.choices`) or InputError (a value that is no number).
     """
     from_zero, ratio, to_zero = _between(from_unit, to_unit, quantity)
-    if isinstance(value, float) or type(value) is int:
+    if isinstance(value, float) or (type(value) is int and -_LARGEST <= value <= _LARGEST):
         return (float(value) - from_zero) * ratio + to_zero
     return _convert_array(value, from_zero, ratio, to_zero)
 
@@ -58,10 +59,10 @@ def _convert_array(
 
     try:
         given = np.asarray(value)
-        if given.dtype.kind in "USO" and any(isinstance(item, (str, bytes)) for item in given.flat):
+        if given.dtype.kind not in "biufO" or any(isinstance(item, (str, bytes)) for item in given.flat):
             raise TypeError
         numbers = given.astype(float)
-    except (TypeError, ValueError):
+    except (TypeError, ValueError, OverflowError):
         raise InputError(
             "value", value, "The value to convert must be a number or an array of numbers."
         ) from None

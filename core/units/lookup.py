@@ -28,7 +28,7 @@ Found = Unit | tuple[str, ...] | None  # the unit, the choices, or nothing
 
 
 def units_of(quantity: str) -> tuple[str, ...]:
-    """Symbols of the units of a quantity, in the order in which they are offered; the first is the usual one."""
+    """Symbols of the units of a quantity, in the order in which they are offered; the usual one first."""
     return tuple(unit.symbol for unit in REGISTRY[quantity_named(quantity)])
 
 
@@ -46,8 +46,8 @@ def quantity_named(name: str) -> str:
 def find_unit(text: str | Unit, quantity: str | None = None) -> Unit:
     """The unit that a text means, however it is written: "gr/gal", "cu ft", "°d", "mg/l as CaCO3".
 
-    Without a quantity a text that could be hardness is read as hardness when it is one of its symbols ("mmol/L"),
-    and is asked back when it commonly means something else too ("mg/L", "ppm", "°F", "gal", "grains").
+    Without a quantity a symbol of hardness ("mmol/L") is read as hardness; what commonly means something else
+    too ("mg/L", "ppm", "°F", "gal", "grains") is asked back.
     A quantity in round brackets settles it: "°F (temperature)".
 
     Raises AmbiguousUnit, with `.choices` that this function accepts, or UnitError.

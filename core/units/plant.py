@@ -26,6 +26,8 @@ _BTU = 1055.05585262  # J, the international table one [EXACT]
 _CALORIE = 4.1868  # J, likewise [EXACT]
 _POUND_KG = POUND / 1000
 _MINUTES = 60  # in an hour
+_US_LOADING = US_GALLON * _MINUTES / 1000 / _SQUARE_FOOT  # m/h in a gpm per square foot
+_IMPERIAL_LOADING = IMPERIAL_GALLON * _MINUTES / 1000 / _SQUARE_FOOT
 _GRAIN_MOL = GRAIN / 1000 / MOLAR_MASS_CACO3  # mol CaCO3 in a grain of it
 _GERMAN_M3 = 10.0 / MOLAR_MASS_CAO  # mol in a cubic metre of one German degree
 _FRENCH_M3 = 10.0 / MOLAR_MASS_CACO3  # the same of one French degree
@@ -62,7 +64,7 @@ _TABLES: tuple[tuple[Unit, ...], ...] = (
             "L/person/day",
             1.0,
             0,
-            "L/p/d|L/(p·d)|lpcd|L/head/day|L per person per day|L/person d|L/P d|L/d/person",
+            "L/p/d|L/(p·d)|lpcd|L/head/day|L/person d|L/p d|L/d/person",
         ),
         ("US gal/person/day", US_GALLON, 0, "gpcd|US gal/capita/day|US gal/p/d|US gal per person per day"),
         ("imp gal/person/day", IMPERIAL_GALLON, 0, "imp gal/capita/day|imp gal/p/d|UK gal/person/day"),
@@ -176,7 +178,7 @@ _TABLES: tuple[tuple[Unit, ...], ...] = (
             "kgr/ft³",
             2.0 * 1000 * _GRAIN_MOL / CUBIC_FOOT,
             1,
-            "kgr/cu ft|kilograins/ft3|kgrain/ft3|kgr/cf|kgr",
+            "kgr/cu ft|kilograins/ft3|kgr/cf|kgr",
         ),
         ("grain/ft³", 2.0 * _GRAIN_MOL / CUBIC_FOOT, 0, "gr/ft3|grains/ft3|grains per cubic foot|gr/cu ft"),
         ("m³·°dH/L", 2.0 * _GERMAN_M3, 2, "°dH·m3/L|m3 °dH/L|°dH m3/L"),
@@ -209,7 +211,7 @@ _TABLES: tuple[tuple[Unit, ...], ...] = (
             "grain/lb",
             GRAIN / POUND,
             0,
-            "gr/lb|grains/lb|grains per pound|gr/lb salt|grains per pound of salt",
+            "gr/lb|grains/lb|gr/lb salt|grains per pound of salt",
         ),
         ("kgr/lb", 1000 * GRAIN / POUND, 2, "kilograins/lb|kgrain/lb"),
     ),
@@ -223,11 +225,11 @@ _TABLES: tuple[tuple[Unit, ...], ...] = (
     units(  # base: m/h
         "surface loading",
         ("m/h", 1.0, 1, "m3/m2/h|m3/(m2 h)|m/hr|m3/m2 h"),
-        ("gpm/ft²", US_GALLON * _MINUTES / 1000 / _SQUARE_FOOT, 1, "gpm/sq ft|gpm/ft2|US gpm/ft2|gpm/sf"),
+        ("gpm/ft²", _US_LOADING, 1, "gpm/sq ft|gpm/ft2|US gpm/ft2|gpm/sf"),
         ("L/s/m²", 3.6, 1, "L/(s m2)|L/s m2"),
         (
             "imp gpm/ft²",
-            IMPERIAL_GALLON * _MINUTES / 1000 / _SQUARE_FOOT,
+            _IMPERIAL_LOADING,
             1,
             "igpm/ft2|imp gpm/sq ft|UK gpm/ft2",
         ),

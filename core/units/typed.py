@@ -11,7 +11,7 @@ _SIGNS = str.maketrans(
         **dict.fromkeys("µμ", "u"),
         **dict.fromkeys("°º˚.,^_[]()\u200b", ""),  # often left out
         **dict.fromkeys("·⋅•*×", " "),
-        **dict.fromkeys("−⁻‐‑–", "-"),  # noqa: RUF001
+        **dict.fromkeys("−⁻‐‑–", "-"),
         **dict(zip("₀₁₂₃₄₅₆₇₈₉⁰¹²³⁴⁵⁶⁷⁸⁹", "01234567890123456789", strict=True)),
         **dict.fromkeys("÷∕⁄", "/"),
         "⁺": "+",

@@ -27,7 +27,10 @@ _ENGLISH = GRAIN / IMPERIAL_GALLON  # a grain of CaCO3 per imperial gallon
 _AMERICAN = GRAIN / US_GALLON  # a grain of CaCO3 per US gallon
 
 _CACO3_ALIASES = "ppm CaCO3|ppm as CaCO3|mg/L as CaCO3|mg CaCO3/L|g/m3 CaCO3|CaCO3|calcium carbonate"
-_GPG_ALIASES = "grains|grain|gr|gr/gal|grains/gal|grains per gallon|grain/US gal|gr/US gal|gpg CaCO3|gpg US|US gpg|US grains per gallon"
+_GPG_ALIASES = (
+    "grains|grain|gr|gr/gal|grains/gal|grains per gallon|grain/US gal|gr/US gal|gpg CaCO3|gpg US|US gpg"
+    "|US grains per gallon"
+)
 _FRENCH_ALIASES = "°f|f|fH|°F|°TH|TH|french degrees|degrees french|french"
 _ENGLISH_ALIASES = (
     "e|°Clark|clark|clark degrees|degrees clark|english degrees|degrees english|english|°eH|eH"
@@ -41,7 +44,7 @@ HARDNESS = units(
     ("mmol/L", MOLAR_MASS_CACO3, 2, "mmol|mol/m3|mmol/L CaCO3|mmol CaCO3/L|mmol/L Ca+Mg"),
     ("meq/L", MOLAR_MASS_CACO3 / 2, 2, "meq|mval|mval/L|me/L|mequiv/L|eq/m3|°Ж|Ж|°rH"),
     ("gpg", _AMERICAN, 1, _GPG_ALIASES),
-    ("°dH", _GERMAN, 1, "°d|d|dGH|°dGH|°GH|german degrees|degrees german|german|deutsche Härte"),
+    ("°dH", _GERMAN, 1, "°d|d|dGH|°dGH|german degrees|degrees german|german|deutsche Härte"),
     ("°fH", _FRENCH, 1, _FRENCH_ALIASES),
     ("°e", _ENGLISH, 1, _ENGLISH_ALIASES),
     ("mg/L Ca", MOLAR_MASS_CACO3 / _CA, 0, "ppm Ca|mg/L as Ca|mg Ca/L|Ca|calcium"),
@@ -59,7 +62,7 @@ ALKALINITY = units(
     ("mmol/L K_S4.3", 1.0, 2, "mmol/L|mmol|mol/m3|K S4.3|KS4.3|K_S4.3 mmol/L|KS4,3|mmol/L H+|SBV"),
     ("meq/L", 1.0, 2, "meq|mval|mval/L|me/L|mequiv/L|eq/m3"),
     ("mg/L HCO3", 1.0 / molar_mass(H=1, C=1, O=3), 0, "ppm HCO3|mg/L as HCO3|mg HCO3/L|HCO3|bicarbonate"),
-    ("°dKH", _GERMAN / _EQ, 1, "dKH|°dH|°d|d|dH|°KH|german degrees|degrees german|german"),
+    ("°dKH", _GERMAN / _EQ, 1, "dKH|°dH|°d|d|dH|german degrees|degrees german|german"),
     ("°fH", _FRENCH / _EQ, 1, "°f|f|fH|°F|°TAC|TAC|french degrees|degrees french|french"),
     ("°e", _ENGLISH / _EQ, 1, _ENGLISH_ALIASES),
     ("gpg", _AMERICAN / _EQ, 1, _GPG_ALIASES),
@@ -94,7 +97,7 @@ _AS_ELEMENT = {
     "ammonium": (
         "mg/L NH4-N",
         ATOMIC_WEIGHTS["N"],
-        "mg/L N|mg/L as N|mg/L NH3-N|NH3-N|ppm N|NH4-N|ammonia nitrogen",
+        "mg/L N|mg/L as N|mg/L NH3-N|ppm N|NH4-N|NH3-N",
     ),
     "sulfate": ("mg/L SO4-S", ATOMIC_WEIGHTS["S"], "mg/L S|mg/L as S|SO4-S|ppm S"),
     "silica": ("mg/L Si", ATOMIC_WEIGHTS["Si"], "mg/L as Si|ppm Si"),

@@ -64,7 +64,11 @@ def formula(
 
 @dataclass(slots=True)
 class Working:
-    """The steps that led to an answer, in the order they were taken."""
+    """The steps that were taken, in their order.
+
+    The result of a step is handed on as it is to the steps that use it, so that `leading_to` can follow a result
+    back to where it began.
+    """
 
     steps: list[Step] = field(default_factory=list)
 
@@ -73,3 +77,18 @@ class Working:
         result = function(**inputs)
         self.steps.append(Step(function.card, function, inputs, result, note))  # type: ignore[attr-defined]
         return result
+
+    def add(self, step: Step) -> Any:
+        """Keep a step that was taken elsewhere, return its result."""
+        self.steps.append(step)
+        return step.result
+
+    def leading_to(self, *results: Any) -> tuple[Step, ...]:
+        """The steps that these results came from, however far back, in the order they were taken."""
+        wanted, kept = list(results), []
+        for step in reversed(self.steps):
+            if any(step.result is value for value in wanted):
+                wanted = [value for value in wanted if value is not step.result]
+                wanted += step.inputs.values()
+                kept.append(step)
+        return tuple(reversed(kept))

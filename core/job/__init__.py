@@ -11,14 +11,14 @@ from typing import TYPE_CHECKING, Any
 from core.job.record import Entry, Job
 
 if TYPE_CHECKING:
-    from core.job.assess import Assessment, assess
+    from core.job.assessment import Assessment, assess
 
 __all__ = ["Assessment", "Entry", "Job", "assess"]
 
 
 def __getattr__(name: str) -> Any:
     if name in ("Assessment", "assess"):
-        from core.job import assess as module
+        from core.job import assessment as module
 
         return getattr(module, name)
     raise AttributeError(f"module {__name__!r} has no attribute {name!r}")

@@ -20,7 +20,8 @@ class Amount:
 
     value: float
     unit: str
-    quantity: str = ""  # a quantity of core.units; "" where there is nothing to convert (persons, shares of one)
+    quantity: str = ""  # a quantity of core.units; "" where there is nothing to convert (persons, pH)
+    role: str = ""  # what kind of that quantity, where people use other units for it: resin among volumes
 
 
 @dataclass(frozen=True, slots=True)

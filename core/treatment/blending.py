@@ -5,6 +5,7 @@ blend(raw, softened, share) -> same unit  hardness and every conserved quantity,
 check_blend(raw, softened, target)                           raises InputError with a sentence
 check_share(share)                                           raises InputError with a sentence
 stream_flow(flow [L/min], share) -> L/min
+hardness_removed(raw, target=0 [mmol/L]) -> mmol/L
 sodium_added(removed [mmol/L]) -> mg/L;  potassium_added(removed) -> mg/L
 sodium_after(sodium [mg/L], removed [mmol/L]) -> mg/L
 largest_removal(sodium, limit [mg/L]) -> mmol/L
@@ -135,6 +136,21 @@ def check_share(share: Any) -> None:
 def stream_flow(flow: Number, share: Number) -> Number:
     """Flow of the stream that makes up this share of the blend. [L/min]"""
     return flow * share
+
+
+@formula(
+    "Hardness removed",
+    "removed = raw − target",
+    unit="mmol/L",
+    takes={"raw": "mmol/L", "target": "mmol/L"},
+    source="definition",
+)
+@broadcasts
+def hardness_removed(raw: Number, target: Number = 0.0) -> Number:
+    """Hardness taken out of the water on the way to the taps [mmol/L]; none where the target is above the raw
+    water.
+    """
+    return larger(raw - target, 0.0)
 
 
 @formula(

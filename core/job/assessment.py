@@ -1,0 +1,48 @@
+"""What is said about a job: one assessment, a part for each section, each made when it is first looked at."""
+
+from __future__ import annotations
+
+from functools import cached_property
+
+from core.job.answers import Part
+from core.job.blend import assess_blend
+from core.job.demand import Demand, assess_demand
+from core.job.record import Job
+from core.job.softener import assess_softener
+from core.job.water import assess_water
+
+
+class Assessment:
+    """The answers about one job. Parts are made when asked for, so that a key press pays for one section only."""
+
+    def __init__(self, job: Job) -> None:
+        self.job = job
+
+    @cached_property
+    def water(self) -> Part:
+        """What the reading means."""
+        return assess_water(self.job)
+
+    @cached_property
+    def demand(self) -> Part:
+        """How much water, how fast."""
+        return self._demand.part
+
+    @cached_property
+    def softener(self) -> Part:
+        """Size, salt setting, running."""
+        return assess_softener(self.job, self._demand)
+
+    @cached_property
+    def blend(self) -> Part:
+        """Raw water back into softened."""
+        return assess_blend(self.job)
+
+    @cached_property
+    def _demand(self) -> Demand:
+        return assess_demand(self.job)
+
+
+def assess(job: Job) -> Assessment:
+    """The assessment of a job: pure, the same job gives the same answers."""
+    return Assessment(job)

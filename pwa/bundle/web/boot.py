@@ -1,0 +1,24 @@
+"""Starts the app in the browser's Python; run by worker.js, with the archives in place."""
+
+import importlib
+import random
+import runpy
+import sys
+import time
+
+for archive in ("__LIBRARY_FILE__", "__APP_FILE__"):
+    if archive not in sys.path:
+        sys.path.insert(0, archive)
+importlib.invalidate_caches()
+
+# A memory image carries the random state and the time zone of the machine that made it.
+random.seed()
+if hasattr(time, "tzset"):
+    time.tzset()
+
+import flet.messaging.pyodide_connection as connection  # noqa: E402
+import flet_js  # noqa: E402
+
+connection.flet_js = flet_js  # in a memory image this is still the stand-in of the build
+
+runpy.run_module("pwa.main", run_name="__main__", alter_sys=False)

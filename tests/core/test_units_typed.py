@@ -58,6 +58,7 @@ WRITTEN = {
     "length": {"in": ['"', "inches", "″"], "ft": ["'", "feet"]},
     "share": {"%": ["percent", "per cent"]},
 }
+SYMBOLS = {unit.symbol for table in REGISTRY.values() for unit in table}
 CASES = [
     (q, symbol, text) for q, found in WRITTEN.items() for symbol, texts in found.items() for text in texts
 ]

@@ -13,7 +13,6 @@ from dataclasses import dataclass, field
 from core.working import Step
 
 
-
 @dataclass(frozen=True, slots=True)
 class Amount:
     """A number with its unit and the quantity it measures, so that it can be shown in another unit."""

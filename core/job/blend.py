@@ -55,14 +55,22 @@ def _setting(ledger: Ledger, raw: float, softened: float, target: float) -> list
     ]
 
 
-def sodium_answers(ledger: Ledger, raw: float, target: float) -> list[Answer]:
+def sodium_answers(ledger: Ledger, raw: float, target: float | None) -> list[Answer]:
     """What the exchange adds to the water at the taps, and the sum where the raw water's sodium is known."""
     w = ledger.working
-    removed = w.step(blending.hardness_removed, raw=raw, target=target)
+    removed = w.step(blending.hardness_removed, raw=raw, **({} if target is None else {"target": target}))
     if ledger.choice("softener.salt") == "kcl":
         added = w.step(blending.potassium_added, removed=removed)
         words = say("Potassium chloride adds potassium instead of sodium.")
-        return [Answer("potassium", "Potassium added", Amount(added, "mg/L K", "potassium"), words, w.leading_to(added))]
+        return [
+            Answer(
+                "potassium",
+                "Potassium added",
+                Amount(added, "mg/L K", "potassium"),
+                words,
+                w.leading_to(added),
+            )
+        ]
     sodium = ledger.read("water.sodium")
     if sodium is None:
         added = w.step(blending.sodium_added, removed=removed)
@@ -83,9 +91,19 @@ def _sodium_sum(total: float, steps) -> Answer:
         words, tone = "Below every limit and advice known here.", "good"
     shown = (binding or over or (None,))[0 if binding else -1]
     amounts = {"limit": _limit(shown)} if shown else {}
-    marks = tuple(Mark(limit.key, _limit(limit), limit.source) for limit in blending.sodium_limits() if limit.key in ("eu", "epa-diet"))
+    marks = tuple(
+        Mark(limit.key, _limit(limit), limit.source)
+        for limit in blending.sodium_limits()
+        if limit.key in ("eu", "epa-diet")
+    )
     return Answer(
-        "sodium", "Sodium at the taps", Amount(total, "mg/L Na", "sodium"), say(words, **amounts), steps, marks, tone=tone
+        "sodium",
+        "Sodium at the taps",
+        Amount(total, "mg/L Na", "sodium"),
+        say(words, **amounts),
+        steps,
+        marks,
+        tone=tone,
     )
 
 

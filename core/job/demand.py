@@ -78,7 +78,9 @@ def _peak(ledger: Ledger) -> tuple[float | None, str]:
     entered = ledger.read("demand.peak_flow")
     if entered is not None or "demand.peak_flow" in ledger.job.entries:
         return entered, "entered"
-    bathrooms = ledger.need("demand.bathrooms", "Enter the bathrooms, or the peak flow, to check that the softener carries it.")
+    bathrooms = ledger.need(
+        "demand.bathrooms", "Enter the bathrooms, or the peak flow, to check that the softener carries it."
+    )
     if bathrooms is None:
         return None, rule
     return _peak_by(ledger, rule, bathrooms), rule
@@ -135,5 +137,3 @@ def _other_rules(ledger: Ledger, rule: str) -> list[Answer]:
             )
         )
     return answers
-
-

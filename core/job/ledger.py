@@ -17,7 +17,12 @@ from core.job.record import Entry, Job
 from core.units import convert
 from core.working import Card, Step, Working
 
-ORIGIN = {"measured": "measured", "report": "from a report", "told": "told by the customer", "assumed": "assumed"}
+ORIGIN = {
+    "measured": "measured",
+    "report": "from a report",
+    "told": "told by the customer",
+    "assumed": "assumed",
+}
 
 
 @dataclass(slots=True)
@@ -85,13 +90,18 @@ class Ledger:
             self._refuse(entry, f"“{held.typed}” is not understood, so nothing is computed from it.")
             return None
         try:
-            value = self._reading(entry, held.value, held.unit, ORIGIN[held.source] + (f", {held.kit}" if held.kit else ""))
+            value = self._reading(
+                entry, held.value, held.unit, ORIGIN[held.source] + (f", {held.kit}" if held.kit else "")
+            )
         except TapwrightError as error:
             self._refuse(entry, str(error))
             return None
         if not entry.lowest <= value <= entry.highest:
             self.working.steps.pop()
-            self._refuse(entry, f"{entry.label} must be {_range(entry, held.unit)}; {held.value:g} {held.unit} was entered.")
+            self._refuse(
+                entry,
+                f"{entry.label} must be {_range(entry, held.unit)}; {held.value:g} {held.unit} was entered.",
+            )
             return None
         return value
 

@@ -39,7 +39,13 @@ class Entry:
 
     def as_json(self) -> dict[str, Any]:
         """The entry for a job file, empty parts left out."""
-        parts = {"value": self.value, "unit": self.unit, "source": self.source, "kit": self.kit, "typed": self.typed}
+        parts = {
+            "value": self.value,
+            "unit": self.unit,
+            "source": self.source,
+            "kit": self.kit,
+            "typed": self.typed,
+        }
         return {key: part for key, part in parts.items() if part != "" or key == "unit"}
 
 

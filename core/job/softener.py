@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from math import isnan
 
-from core.job.answers import Amount, Answer, Assumption, Mark, Part, Problem, say
+from core.job.answers import Amount, Answer, Mark, Part, Problem, say
 from core.job.blend import sodium_answers
 from core.job.cautions import softener_cautions
 from core.job.demand import Demand
@@ -14,9 +14,7 @@ from core.job.record import Job
 from core.treatment import regeneration, resin, sizing, softener, vessel
 from core.treatment.sizing import Choice
 from core.treatment.vessel import Bed
-from core.working import Working
-
-RESERVE_DAYS = {"single": 1.0, "twin": 0.0}
+from core.working import Step, Working
 
 
 @dataclass(frozen=True, slots=True)
@@ -24,7 +22,7 @@ class Setting:
     """All that decides how a bed fares: what it has to do, and how it is run."""
 
     hardness: float  # mmol/L, iron and manganese counted in
-    target: float  # mmol/L at the taps
+    target: float | None  # mmol/L at the taps; None where no raw water is mixed back in
     load: float  # mol/day
     peak: float  # L/min
     salt_dose: float  # g/L
@@ -39,7 +37,6 @@ class Bedding:
 
     bed: Bed
     choice: Choice
-    index: int  # of the bed among the candidates
     entered: bool
     reason: str  # why it will not do; empty where it does
 
@@ -60,18 +57,21 @@ def _setting(ledger: Ledger, demand: Demand) -> Setting | None:
     hardness = _counted_hardness(ledger)
     salt_dose = _salt_dose(ledger)
     shortest, longest = ledger.read("softener.shortest"), ledger.read("softener.longest")
-    target = ledger.read("blend.target") if "blend.target" in ledger.job.entries else 0.0
-    numbers = (hardness, demand.volume, demand.peak, salt_dose, shortest, longest, target)
-    if any(number is None for number in numbers):
+    blended = "blend.target" in ledger.job.entries
+    target = ledger.read("blend.target")
+    numbers = (hardness, demand.volume, demand.peak, salt_dose, shortest, longest)
+    if any(number is None for number in numbers) or (blended and target is None):
         return None
-    load = ledger.working.step(softener.daily_load, volume=demand.volume, hardness=hardness, target=target)
+    step = ledger.working.step
+    removed = {"target": target} if blended else {}
+    load = step(softener.daily_load, volume=demand.volume, hardness=hardness, **removed)
     if not load > 0.0:
-        ledger.problems["softener.load"] = Problem(
+        ledger.problems["water.hardness"] = Problem(
             "water.hardness", "warning", "There is no hardness to remove here: no softener is needed for it."
         )
         return None
-    kind = ledger.choice("softener.kind")
-    return Setting(hardness, target, load, demand.peak, salt_dose, RESERVE_DAYS[kind], shortest, longest)
+    days = step(softener.reserve_days, kind=ledger.choice("softener.kind"))
+    return Setting(hardness, target, load, demand.peak, salt_dose, days, shortest, longest)
 
 
 def _counted_hardness(ledger: Ledger) -> float | None:
@@ -87,51 +87,41 @@ def _counted_hardness(ledger: Ledger) -> float | None:
 
 
 def _salt_dose(ledger: Ledger) -> float | None:
-    entered = ledger.read("softener.salt_dose")
-    if entered is None and "softener.salt_dose" not in ledger.job.entries:
-        ledger.assumptions["softener.salt_dose"] = Assumption(
-            "softener.salt_dose",
-            Amount(sizing.ECONOMICAL_DOSE, "g/L", "salt dose"),
-            "A saving setting; more salt gives more capacity, and less for each kilogram.",
-            "TRADE-SIZING",
-        )
-        return sizing.ECONOMICAL_DOSE
-    why_not = "" if entered is None else resin.why_no_capacity(entered)
+    dose = ledger.read("softener.salt_dose")
+    why_not = "" if dose is None else resin.why_no_capacity(dose)
     if why_not:
         ledger.problems["softener.salt_dose"] = Problem("softener.salt_dose", "error", why_not)
         return None
-    return entered
+    return dose
 
 
 def _bedding(ledger: Ledger, setting: Setting) -> Bedding | None:
     entered = ledger.read("softener.resin")
     if entered is None and "softener.resin" in ledger.job.entries:
         return None
-    beds = None if entered is None else (_usual_vessel(entered),)
-    choice = sizing.choose_size(
-        setting.load,
-        setting.peak,
-        setting.salt_dose,
-        beds=beds,
-        reserve_days=setting.reserve_days,
-        shortest=setting.shortest,
-        longest=setting.longest,
-    )
+    inputs = {
+        "load": setting.load,
+        "peak_flow": setting.peak,
+        "salt_dose": setting.salt_dose,
+        "reserve_days": setting.reserve_days,
+        "shortest": setting.shortest,
+        "longest": setting.longest,
+    }
     if entered is not None:
-        return Bedding(choice.beds[0], choice, 0, True, choice.reasons[0])
+        bed = Bed(entered, ledger.working.step(vessel.usual_diameter, resin_volume=entered))
+        choice = sizing.choose_size(**inputs, beds=(bed,))
+        return Bedding(bed, choice, True, choice.reasons[0])
+    choice = sizing.choose_size(**inputs)
     if choice.best is None:
         ledger.problems["softener.resin"] = Problem(
             "softener.resin", "error", f"No usual bed will do. The largest: {choice.reasons[-1]}"
         )
         return None
-    return Bedding(choice.beds[choice.best], choice, choice.best, False, "")
-
-
-def _usual_vessel(resin_volume: float) -> Bed:
-    """The usual vessel that an entered amount of resin sits in: the narrowest that is filled no higher than usual."""
-    usual = vessel.trade_beds()
-    fitting = [bed for bed in usual if bed.resin_volume >= resin_volume * (1.0 - 1e-6)] or [usual[-1]]
-    return Bed(resin_volume, fitting[0].diameter)
+    best = choice.beds[choice.best]
+    recommend = sizing.recommended_resin
+    ledger.working.add(Step(recommend.card, recommend, inputs, best.resin_volume))
+    diameter = ledger.working.step(vessel.usual_diameter, resin_volume=best.resin_volume)
+    return Bedding(Bed(best.resin_volume, diameter), choice, False, "")
 
 
 def _answers(ledger: Ledger, setting: Setting, bedding: Bedding) -> list[Answer]:
@@ -172,7 +162,10 @@ def _answers(ledger: Ledger, setting: Setting, bedding: Bedding) -> list[Answer]
             "reserve",
             "Reserve",
             Amount(reserve, "mol", "exchanged amount"),
-            say("{days} of average use, kept back until the night.", days=Amount(setting.reserve_days, "day", "time")),
+            say(
+                "{days} of average use, kept back until the night.",
+                days=Amount(setting.reserve_days, "day", "time"),
+            ),
             w.leading_to(reserve),
         ),
         Answer(
@@ -199,9 +192,15 @@ def _headline(w: Working, setting: Setting, bedding: Bedding, interval: float) -
         words = say(f"This bed falls short. {bedding.reason}")
         tone = "bad"
     elif bedding.entered:
-        words, tone = say("Will do: at {dose} of salt it regenerates every {days}.", dose=dose, days=days), "good"
+        words, tone = (
+            say("Will do: at {dose} of salt it regenerates every {days}.", dose=dose, days=days),
+            "good",
+        )
     else:
-        words, tone = say("Fit this much resin; at {dose} of salt it regenerates every {days}.", dose=dose, days=days), "plain"
+        words, tone = (
+            say("Fit this much resin; at {dose} of salt it regenerates every {days}.", dose=dose, days=days),
+            "plain",
+        )
     marks = tuple(
         Mark(name, Amount(bedding.choice.beds[at].resin_volume, "L", "volume", "resin"))
         for name, at in (("next smaller", bedding.choice.smaller), ("next larger", bedding.choice.larger))
@@ -219,7 +218,12 @@ def _interval(w: Working, setting: Setting, interval: float) -> Answer:
     short = interval < setting.shortest
     words = "Shorter than the shortest interval set." if short else "On average days."
     return Answer(
-        "interval", "Days between regenerations", amount, say(words), w.leading_to(interval), marks,
+        "interval",
+        "Days between regenerations",
+        amount,
+        say(words),
+        w.leading_to(interval),
+        marks,
         tone="watch" if short else "plain",
     )
 
@@ -245,8 +249,11 @@ def _flow_answers(w: Working, setting: Setting, bed: Bed, area: float) -> list[A
             "vessel",
             "Vessel diameter",
             Amount(bed.diameter, "mm", "length"),
-            say("A usual size; the bed is {depth} deep, {loading} at the peak.",
-                depth=Amount(depth, "m", "length", "depth"), loading=Amount(loading, "m/h", "surface loading")),
+            say(
+                "A usual size; the bed is {depth} deep, {loading} at the peak.",
+                depth=Amount(depth, "m", "length", "depth"),
+                loading=Amount(loading, "m/h", "surface loading"),
+            ),
             w.leading_to(area, depth, loading),
         ),
     ]
@@ -258,12 +265,27 @@ def _yearly(w: Working, setting: Setting, bed: Bed, area: float, salt: float, in
     water_year = w.step(softener.water_per_year, water=water, interval=interval)
     efficiency = w.step(softener.effective_efficiency, interval=interval, load=setting.load, salt=salt)
     return [
-        Answer("salt_year", "Salt a year", Amount(salt_year, "kg", "mass"),
-               say("On average days, the reserve thrown away each time counted in."), w.leading_to(salt_year)),
-        Answer("water_year", "Regeneration water a year", Amount(water_year, "L", "volume", "large volume"),
-               say("{water} to the drain each time.", water=Amount(water, "L", "volume")), w.leading_to(water_year)),
-        Answer("efficiency", "Hardness removed per salt", Amount(efficiency, "mol/kg", "salt efficiency"),
-               say("Really used, with the reserve thrown away."), w.leading_to(efficiency)),
+        Answer(
+            "salt_year",
+            "Salt a year",
+            Amount(salt_year, "kg", "mass"),
+            say("On average days, the reserve thrown away each time counted in."),
+            w.leading_to(salt_year),
+        ),
+        Answer(
+            "water_year",
+            "Regeneration water a year",
+            Amount(water_year, "L", "volume", "large volume"),
+            say("{water} to the drain each time.", water=Amount(water, "L", "volume")),
+            w.leading_to(water_year),
+        ),
+        Answer(
+            "efficiency",
+            "Hardness removed per salt",
+            Amount(efficiency, "mol/kg", "salt efficiency"),
+            say("Really used, with the reserve thrown away."),
+            w.leading_to(efficiency),
+        ),
     ]
 
 

@@ -91,13 +91,9 @@ def check_blend(raw: Any, softened: Any, target: Any) -> None:
     """Refuse a target that two streams cannot give: InputError says what is wrong and what to enter."""
     for name, value in (("raw hardness", raw), ("softened hardness", softened), ("target", target)):
         if not np.all(np.asarray(value, dtype=float) >= 0.0):
-            raise InputError(
-                name, value, f"The {name} is missing or below zero. Enter a hardness of zero or more."
-            )
+            raise InputError(name, value, f"The {name} is missing or below zero. Enter a hardness of zero or more.")
     if np.any(np.equal(raw, softened)):
-        raise InputError(
-            "softened hardness", softened, "Both streams are equally hard: no share changes the blend."
-        )
+        raise InputError("softened hardness", softened, "Both streams are equally hard: no share changes the blend.")
     if np.any(np.less(raw, softened)):
         raise InputError(
             "softened hardness",

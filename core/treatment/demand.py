@@ -135,9 +135,7 @@ def daily_volume_from_meter(volume: Number, days: Number) -> Number:
     source="definition",
 )
 @broadcasts
-def average_persons(
-    persons: Number, guests: Number = 0.0, guest_days: Number = 0.0, away_days: Number = 0.0
-) -> Number:
+def average_persons(persons: Number, guests: Number = 0.0, guest_days: Number = 0.0, away_days: Number = 0.0) -> Number:
     """Persons in the house on average over a year, guests and leave counted."""
     return (persons * (DAYS_PER_YEAR - away_days) + guests * guest_days) / DAYS_PER_YEAR
 
@@ -148,8 +146,7 @@ def average_persons(
     unit="",
     takes={"outdoor_share": "", "toilet_share": ""},
     source="definition",
-    validity="Shares of the whole use. Toilets take about a quarter of the indoor use in US homes "
-    "(secondary source).",
+    validity="Shares of the whole use. Toilets take about a quarter of the indoor use in US homes (secondary source).",
 )
 @broadcasts
 def softened_share(outdoor_share: Number = 0.0, toilet_share: Number = 0.0) -> Number:

@@ -113,8 +113,7 @@ def diluted_brine(salt: Number, strength: Number = 0.10) -> Number:
     unit="L/min",
     takes={"area": "m²", "velocity": "m/h"},
     source="TRADE-BACKWASH",
-    validity="12.2 m/h (5 gpm/ft²) lifts usual resin by half its depth at 10 °C; colder water needs less, "
-    "warmer more.",
+    validity="12.2 m/h (5 gpm/ft²) lifts usual resin by half its depth at 10 °C; colder water needs less, warmer more.",
 )
 @broadcasts
 def backwash_flow(area: Number, velocity: Number = BACKWASH_VELOCITY) -> Number:
@@ -175,9 +174,7 @@ def _dilution(salt: Number, strength: Number, refill: Number) -> Number:
     validity="Usual times and rates of each step, the valve's own settings know better: backwash 10 min at "
     "12.2 m/h, slow rinse 1.5 and fast rinse 2 bed volumes, brine of 10 %.",
 )
-def water_per_regeneration(
-    resin_volume: Number, area: Number, salt: Number, temperature: Number = 15.6
-) -> Number:
+def water_per_regeneration(resin_volume: Number, area: Number, salt: Number, temperature: Number = 15.6) -> Number:
     """Water that one regeneration with the usual steps takes from the main. [L]"""
     return regeneration_water(regeneration_steps(resin_volume, area, salt, temperature=temperature))
 

@@ -11,17 +11,16 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import inf
+from math import inf, nan
 
 import numpy as np
 
 from core.treatment import regeneration, resin, softener, vessel
 from core.treatment.broadcast import Number
 from core.treatment.vessel import SPECIFIC_PEAK, SURFACE_PEAK, Bed
+from core.working import formula
 
-ECONOMICAL_DOSE = (
-    6.0 * resin.POUND_PER_CUBIC_FOOT
-)  # g/L, the lowest dose two sizing pages agree on [TRADE-SIZING]
+ECONOMICAL_DOSE = 6.0 * resin.POUND_PER_CUBIC_FOOT  # g/L, the lowest dose two sizing pages agree on [TRADE-SIZING]
 SHORTEST_INTERVAL = 3.0  # days [US-DISTRICT]
 LONGEST_INTERVAL = 14.0  # days [TRADE-SIZING]; hygiene rules of a region may be far stricter
 
@@ -155,14 +154,38 @@ def choose_size(
     )
     fits = np.flatnonzero(sizing.carries_peak & sizing.lasts)
     shortest = settings.get("shortest", SHORTEST_INTERVAL)
-    return Choice(
-        beds, sizing, int(fits[0]) if fits.size else None, _reasons(sizing, salt_dose, shortest, settings)
-    )
+    return Choice(beds, sizing, int(fits[0]) if fits.size else None, _reasons(sizing, salt_dose, shortest, settings))
 
 
-def _reasons(
-    sizing: Sizing, salt_dose: float, shortest: Number, settings: dict[str, Number]
-) -> tuple[str, ...]:
+@formula(
+    "Recommended resin",
+    "the smallest usual bed that carries the peak and lasts the shortest interval",
+    unit="L",
+    takes={
+        "load": "mol/day",
+        "peak_flow": "L/min",
+        "salt_dose": "g/L",
+        "reserve_days": "day",
+        "shortest": "day",
+        "longest": "day",
+    },
+    source="common practice, no source",
+    validity="Of the generic sizes of the trade; peaks up to 8 gpm/ft³ and 20 gpm/ft².",
+)
+def recommended_resin(
+    load: float,
+    peak_flow: float,
+    salt_dose: float,
+    reserve_days: float = 1.0,
+    shortest: float = SHORTEST_INTERVAL,
+    longest: float = LONGEST_INTERVAL,
+) -> float:
+    """Resin of the bed that `choose_size` recommends; NaN where none will do. [L]"""
+    choice = choose_size(load, peak_flow, salt_dose, reserve_days=reserve_days, shortest=shortest, longest=longest)
+    return nan if choice.best is None else choice.beds[choice.best].resin_volume
+
+
+def _reasons(sizing: Sizing, salt_dose: float, shortest: Number, settings: dict[str, Number]) -> tuple[str, ...]:
     missing = resin.why_no_capacity(salt_dose, settings.get("table"))
     specific = sizing.specific_flow > settings.get("specific_limit", SPECIFIC_PEAK)
     surface = sizing.surface_loading > settings.get("surface_limit", SURFACE_PEAK)

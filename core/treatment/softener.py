@@ -6,6 +6,7 @@
     daily_load(volume [L/day], hardness, target=0 [mmol/L]) -> mol/day
     bed_capacity(resin_volume [L], capacity [eq/L]) -> mol
     salt_per_regeneration(resin_volume [L], salt_dose [g/L]) -> kg
+    reserve_days(kind) -> day
     reserve_of_days(load [mol/day], days=1) -> mol;  reserve_of_share(capacity [mol], share=0.25) -> mol
     usable_capacity(capacity [mol], reserve [mol]) -> mol
     days_between(usable [mol], load [mol/day], longest=inf [day]) -> day
@@ -148,13 +149,25 @@ def salt_per_regeneration(resin_volume: Number, salt_dose: Number) -> Number:
 
 
 @formula(
+    "Days kept in reserve",
+    "one tank: a day; two tanks in turn: none",
+    unit="day",
+    takes={"kind": ""},
+    source="common practice, no source",
+    validity="One tank regenerates in the night after its reserve is touched; of two tanks one is always ready.",
+)
+def reserve_days(kind: str) -> float:
+    """Days of average load that a softener of this kind ("single" or "twin") keeps in reserve. [day]"""
+    return {"single": 1.0, "twin": 0.0}[kind]
+
+
+@formula(
     "Reserve",
     "reserve = load × days",
     unit="mol",
     takes={"load": "mol/day", "days": "day"},
     source="common practice, no source",
-    validity="One tank that regenerates at night: one average day is usual. Two tanks in turn need next "
-    "to none.",
+    validity="One tank that regenerates at night: one average day is usual. Two tanks in turn need next to none.",
 )
 @broadcasts
 def reserve_of_days(load: Number, days: Number = 1.0) -> Number:

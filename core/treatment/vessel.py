@@ -2,6 +2,7 @@
 
 vessel_sizes() -> tuple[VesselSize, ...]                     .diameter mm, .heights mm, .resin L
 trade_beds() -> tuple[Bed, ...]                              .resin_volume L, .diameter mm
+usual_diameter(resin_volume [L]) -> mm
 service_limits() -> dict[str, ServiceLimit]                  .value in BV/h or m/h, with source and status
 bed_area(diameter [mm], wall_share=0) -> m²
 bed_depth(resin_volume [L], area [m²]) -> m
@@ -80,6 +81,21 @@ def trade_beds() -> tuple[Bed, ...]:
     """The usual beds, least resin first: the least and the most resin each generic vessel holds."""
     beds = {Bed(volume, size.diameter) for size in vessel_sizes() for volume in size.resin}
     return tuple(sorted(beds, key=lambda bed: (bed.resin_volume, bed.diameter)))
+
+
+@formula(
+    "Usual vessel",
+    "the narrowest usual vessel that holds so much resin",
+    unit="mm",
+    takes={"resin_volume": "L"},
+    source="common practice, no source",
+    validity="Nominal diameter of the generic sizes; above the largest the largest is named.",
+)
+def usual_diameter(resin_volume: float) -> float:
+    """Diameter of the vessel that so much resin usually sits in. [mm]"""
+    usual = trade_beds()
+    fitting = (bed.diameter for bed in usual if bed.resin_volume >= resin_volume * (1.0 - 1e-6))
+    return next(fitting, usual[-1].diameter)
 
 
 @cache

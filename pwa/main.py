@@ -1,24 +1,23 @@
-"""The app's entry: a placeholder until the screens stand."""
+"""The app's entry."""
 
 from __future__ import annotations
 
 import flet as ft
 
+from pwa.routes import App
+from pwa.services.clock import SystemClock
+from pwa.services.device_storage import open_storage
+from pwa.services.files import FletFiles
+from pwa.services.host import host
+from pwa.state.workspace import Workspace
+
 
 def main(page: ft.Page) -> None:
-    """Show a text and a number field."""
+    """Put the services together and show the app."""
     page.title = "Tapwright"
-    page.add(
-        ft.SafeArea(
-            ft.Column(
-                [
-                    ft.Text("Tapwright", size=24),
-                    ft.TextField(label="Hardness", suffix="°dH", keyboard_type=ft.KeyboardType.PHONE),
-                    ft.TextField(label="Name"),
-                ]
-            )
-        )
-    )
+    clock = SystemClock()
+    workspace = Workspace(lambda: open_storage(clock), FletFiles(), host())
+    page.render_views(App, workspace, workspace.preferences, workspace.notice)
 
 
 if __name__ == "__main__":

@@ -1,0 +1,1 @@
+"""Reusable pieces of the screens; they know neither routes nor storage."""

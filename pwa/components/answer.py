@@ -1,0 +1,157 @@
+"""The one way to show an answer: its figure, its words, and a line with its band and its limits."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import flet as ft
+
+from core.job.answers import Answer, Part
+from pwa import theme
+from pwa.components.guard import guarded
+from pwa.components.tone import TONES, ToneLine
+from pwa.state.display import Display
+from pwa.state.sheet import PartState
+
+TRACK = 4.0
+BAND = 12.0
+
+
+@dataclass(frozen=True, slots=True)
+class Scale:
+    """Where a value falls on a line from left (-1) to right (1)."""
+
+    lowest: float
+    highest: float
+
+    @classmethod
+    def of(cls, values: list[float]) -> Scale:
+        """A scale on which all values have their place, with some room at both ends."""
+        low, high = min(values), max(values)
+        room = (high - low) * 0.12 or abs(high) * 0.5 or 1.0
+        return cls(max(0.0, low - room) if low >= 0.0 else low - room, high + room)
+
+    def x(self, value: float) -> float:
+        """The place of a value, -1 to 1."""
+        return 2.0 * (value - self.lowest) / (self.highest - self.lowest) - 1.0
+
+
+def AnswerLine(answer: Answer, display: Display) -> ft.Control | None:
+    """The line under an answer: a thick stretch for the band, a mark for the answer, ticks for its limits."""
+    marks = [mark for mark in answer.marks if mark.at.unit == answer.amount.unit]
+    if not marks and answer.band is None:
+        return None
+    here = answer.amount.value
+    scale = Scale.of([here, *(answer.band or ()), *(mark.at.value for mark in marks)])
+    layers: list[ft.Control] = [_bar(-1.0, 1.0, TRACK, ft.Colors.OUTLINE_VARIANT)]
+    if answer.band is not None:
+        layers.append(_bar(scale.x(answer.band[0]), scale.x(answer.band[1]), BAND, ft.Colors.PRIMARY_CONTAINER))
+    layers += [_tick(scale.x(mark.at.value), 16.0, 2.0, ft.Colors.ON_SURFACE_VARIANT) for mark in marks]
+    layers.append(_tick(scale.x(here), 24.0, 6.0, ft.Colors.PRIMARY))
+    names = [_name(scale.x(mark.at.value), f"{mark.name} {display.show(mark.at)}") for mark in marks]
+    return ft.Semantics(
+        label=_spoken(answer, display),
+        exclude_semantics=True,
+        container=True,
+        content=ft.Column(
+            spacing=2,
+            controls=[ft.Stack(height=26, controls=layers), *names],
+        ),
+    )
+
+
+def _bar(left: float, right: float, height: float, colour: str) -> ft.Control:
+    before, width, after = (round(500 * part) for part in (left + 1.0, right - left, 1.0 - right))
+    return ft.Row(
+        spacing=0,
+        height=26,
+        controls=[
+            ft.Container(expand=max(1, before)) if before > 0 else ft.Container(),
+            ft.Container(expand=max(1, width), height=height, bgcolor=colour, border_radius=height / 2),
+            ft.Container(expand=max(1, after)) if after > 0 else ft.Container(),
+        ],
+    )
+
+
+def _tick(x: float, height: float, width: float, colour: str) -> ft.Control:
+    return ft.Container(
+        height=26,
+        alignment=ft.Alignment(x, 0.0),
+        content=ft.Container(width=width, height=height, bgcolor=colour, border_radius=width / 2),
+    )
+
+
+def _name(x: float, text: str) -> ft.Control:
+    return ft.Container(
+        alignment=ft.Alignment(x, 0.0),
+        content=ft.Text(text, theme_style=ft.TextThemeStyle.LABEL_SMALL, color=ft.Colors.ON_SURFACE_VARIANT),
+    )
+
+
+def _spoken(answer: Answer, display: Display) -> str:
+    parts = [f"{answer.label} {display.show(answer.amount)}"]
+    if answer.band is not None:
+        low, high = (
+            display.show(type(answer.amount)(end, answer.amount.unit, answer.amount.quantity)) for end in answer.band
+        )
+        parts.append(f"8 cases of 10 between {low} and {high}")
+    parts += [f"{mark.name} {display.show(mark.at)}" for mark in answer.marks]
+    return ", ".join(parts)
+
+
+def Figure(answer: Answer, display: Display) -> ft.Control:
+    """The figure of an answer with its unit, large."""
+    number, unit = display.figure(answer.amount)
+    return ft.Row(
+        spacing=6,
+        tight=True,
+        vertical_alignment=ft.CrossAxisAlignment.END,
+        controls=[
+            ft.Text(number, theme_style=ft.TextThemeStyle.DISPLAY_SMALL, color=ft.Colors.PRIMARY),
+            ft.Container(padding=ft.Padding.only(bottom=5), content=ft.Text(unit, color=ft.Colors.ON_SURFACE_VARIANT)),
+        ],
+    )
+
+
+def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Control:
+    """A part's headline: figure, words, line; or what is missing for it."""
+    headline = part.headline
+    if headline is None:
+        lacks = [missing.text for missing in part.missing] or ["Nothing to answer yet."]
+        return ft.Column(spacing=4, controls=[ToneLine("missing", text) for text in lacks])
+    words = display.say(headline.words)
+    tone = TONES[headline.tone]
+    controls: list[ft.Control] = [
+        ft.Row(
+            alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
+            vertical_alignment=ft.CrossAxisAlignment.CENTER,
+            controls=[Figure(headline, display), *([_badge(headline.tone)] if tone.word else [])],
+        ),
+        ft.Text(words, theme_style=ft.TextThemeStyle.BODY_LARGE),
+    ]
+    drawn = AnswerLine(headline, display) if line else None
+    if drawn is not None:
+        controls.append(drawn)
+    return ft.Column(spacing=2, controls=controls)
+
+
+def _badge(name: str) -> ft.Control:
+    tone = TONES[name]
+    return ft.Row(
+        spacing=4,
+        tight=True,
+        controls=[ft.Icon(tone.icon, size=20, color=tone.colour), ft.Text(tone.word, color=tone.colour)],
+    )
+
+
+@guarded
+def AnswerStrip(state: PartState, title: str, display: Display) -> ft.Control:
+    """The strip that stays in sight while entries change: the section's headline."""
+    part = state.part
+    content = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display)
+    return ft.Container(
+        bgcolor=ft.Colors.SURFACE_CONTAINER_LOWEST,
+        padding=ft.Padding.symmetric(horizontal=theme.PAD, vertical=theme.GAP),
+        border=ft.Border.only(bottom=ft.BorderSide(2, ft.Colors.PRIMARY)),
+        content=ft.Semantics(live_region=True, container=True, label=f"{title}: answer", content=content),
+    )

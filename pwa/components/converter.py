@@ -1,0 +1,76 @@
+"""Hardness in every unit at once: type a number, tap the unit it was read in."""
+
+from __future__ import annotations
+
+import flet as ft
+
+from core.errors import UnitError
+from core.units import HARDNESS_UNITS, convert
+from pwa import theme
+from pwa.components.guard import guarded
+from pwa.state.display import Display
+from pwa.text import format_number, parse_quantity
+
+SHOWN = HARDNESS_UNITS[:8]
+
+
+@guarded
+def Converter(display: Display, typed: str, unit: str, change) -> ft.Control:
+    """A field and a tile for each unit; `change(typed, unit)` when either changes."""
+    value, message = None, None
+    if typed.strip():
+        try:
+            reading = parse_quantity(typed, quantity="hardness", unit=unit)
+            value, unit = reading.value, reading.unit
+        except UnitError as error:
+            message = str(error)
+    tiles = [Tile(name, unit, value, display, lambda name=name: change(typed, name)) for name in SHOWN]
+    return ft.Column(
+        spacing=theme.GAP,
+        controls=[
+            ft.TextField(
+                label="Hardness reading",
+                value=typed,
+                hint_text="type a number, tap its unit below",
+                keyboard_type=ft.KeyboardType.PHONE,
+                error=message,
+                error_max_lines=6,
+                on_change=lambda event: change(event.control.value, unit),
+            ),
+            *[ft.Row(spacing=theme.GAP, controls=tiles[at : at + 2]) for at in range(0, len(tiles), 2)],
+        ],
+    )
+
+
+def Tile(name: str, chosen: str, value: float | None, display: Display, choose) -> ft.Control:
+    """One unit with the reading in it; the one the number was read in is marked."""
+    is_chosen = name == chosen
+    shown = "–" if value is None else format_number(convert(value, chosen, name), unit=name, decimal=display.decimal)
+    return ft.Semantics(
+        container=True,
+        button=True,
+        selected=is_chosen,
+        exclude_semantics=True,
+        label=f"{shown} {name}" + (", as read" if is_chosen else ""),
+        on_tap=lambda event: choose(),
+        expand=True,
+        content=ft.Container(
+            ink=True,
+            on_click=lambda event: choose(),
+            padding=ft.Padding.symmetric(horizontal=12, vertical=6),
+            border_radius=theme.RADIUS,
+            border=ft.Border.all(2 if is_chosen else 1, ft.Colors.PRIMARY if is_chosen else ft.Colors.OUTLINE_VARIANT),
+            bgcolor=ft.Colors.PRIMARY_CONTAINER if is_chosen else None,
+            content=ft.Column(
+                spacing=0,
+                controls=[
+                    ft.Text(shown, theme_style=ft.TextThemeStyle.TITLE_LARGE),
+                    ft.Text(
+                        f"{name} · as read" if is_chosen else name,
+                        theme_style=ft.TextThemeStyle.BODY_SMALL,
+                        color=ft.Colors.ON_SURFACE_VARIANT,
+                    ),
+                ],
+            ),
+        ),
+    )

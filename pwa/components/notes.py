@@ -1,0 +1,126 @@
+"""What stands under the answers: what was assumed, what to be careful about, and working a tap away."""
+
+from __future__ import annotations
+
+import flet as ft
+
+from core.job.answers import Answer, Assumption, Part
+from core.job.fields import CHOICES, FIELDS
+from core.references import REFERENCES
+from pwa import theme
+from pwa.components.guard import guarded
+from pwa.components.tone import ToneLine
+from pwa.components.working import Working
+from pwa.state.display import Display
+from pwa.state.sheet import PartState
+
+
+@guarded
+def Answers(state: PartState, display: Display) -> ft.Control:
+    """All answers of a section, each opening to its working; then assumptions and cautions."""
+    opened, set_opened = ft.use_state("")
+    part = state.part
+    answer = part.answers.get(opened) if part and opened else None
+    ft.use_dialog(_working_sheet(answer, display, lambda: set_opened("")) if answer else None)
+    if part is None:
+        return ft.Container()
+    return ft.Column(
+        spacing=theme.PAD,
+        controls=[
+            *([_list(part, display, set_opened)] if part.answers else []),
+            *_cautions(part),
+            *_assumptions(part, display),
+        ],
+    )
+
+
+def _working_sheet(answer: Answer, display: Display, close) -> ft.BottomSheet:
+    return ft.BottomSheet(
+        show_drag_handle=True,
+        scrollable=True,
+        on_dismiss=lambda event: close(),
+        content=ft.Container(
+            padding=ft.Padding.only(left=theme.PAD, right=theme.PAD, bottom=theme.PAD),
+            content=ft.Column(
+                tight=True,
+                scroll=ft.ScrollMode.AUTO,
+                controls=[Working(answer, display), ft.TextButton("Close", on_click=lambda event: close())],
+            ),
+        ),
+    )
+
+
+def _list(part: Part, display: Display, open_) -> ft.Control:
+    return ft.Column(
+        spacing=0,
+        controls=[
+            ft.Text("Answers, each opening to its working", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+            *[AnswerRow(answer, display, open_) for answer in part.answers.values()],
+        ],
+    )
+
+
+def AnswerRow(answer: Answer, display: Display, open_) -> ft.Control:
+    """One answer in a list: its name, its number, its words; a tap opens the working."""
+    return ft.Semantics(
+        container=True,
+        button=True,
+        label=f"{answer.label}: {display.show(answer.amount)}. Show working",
+        exclude_semantics=True,
+        on_tap=lambda event: open_(answer.key),
+        content=ft.Container(
+            ink=True,
+            on_click=lambda event: open_(answer.key),
+            padding=ft.Padding.symmetric(vertical=12),
+            border=ft.Border.only(bottom=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
+            content=ft.Column(
+                spacing=2,
+                controls=[
+                    ft.Row(
+                        alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
+                        controls=[
+                            ft.Text(answer.label, expand=True),
+                            ft.Text(display.show(answer.amount), weight=ft.FontWeight.W_600),
+                            ft.Icon(ft.Icons.CHEVRON_RIGHT, color=ft.Colors.ON_SURFACE_VARIANT),
+                        ],
+                    ),
+                    ToneLine(answer.tone, display.say(answer.words))
+                    if answer.tone != "plain"
+                    else ft.Text(
+                        display.say(answer.words),
+                        theme_style=ft.TextThemeStyle.BODY_SMALL,
+                        color=ft.Colors.ON_SURFACE_VARIANT,
+                    ),
+                ],
+            ),
+        ),
+    )
+
+
+def _cautions(part: Part) -> list[ft.Control]:
+    if not part.cautions:
+        return []
+    return [
+        ft.Text("Mind", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+        *[ToneLine(caution.level, f"{caution.text} {_cited(caution.source)}") for caution in part.cautions],
+    ]
+
+
+def _assumptions(part: Part, display: Display) -> list[ft.Control]:
+    if not part.assumptions:
+        return []
+    return [
+        ft.Text("Assumed, not measured", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+        *[ToneLine("note", _assumed(assumption, display)) for assumption in part.assumptions],
+    ]
+
+
+def _assumed(assumption: Assumption, display: Display) -> str:
+    named = FIELDS.get(assumption.field) or CHOICES.get(assumption.field)
+    name = named.label if named else assumption.field
+    return f"{name}: {display.show(assumption.amount)}. {assumption.why} {_cited(assumption.source)}"
+
+
+def _cited(key: str) -> str:
+    reference = REFERENCES.get(key)
+    return f"[{reference.citation}, {reference.status}]" if reference else f"[{key}]"

@@ -1,0 +1,84 @@
+"""One section of a job: its answer in sight above, its entries below, its answers with their working."""
+
+from __future__ import annotations
+
+import flet as ft
+
+from core.job.fields import CHOICES, FIELDS, SECTIONS
+from pwa import theme
+from pwa.components.answer import AnswerStrip
+from pwa.components.entry import ChoiceField, EntryField
+from pwa.components.guard import guarded
+from pwa.components.notes import Answers
+from pwa.state.display import Display
+from pwa.state.sheet import Sheet
+from pwa.state.workspace import Preferences, Workspace
+
+
+@guarded
+def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: Preferences) -> ft.Control:
+    """Strip, entries, answers."""
+    display = workspace.display(sheet)
+    title = SECTIONS[section]
+    return ft.Column(
+        expand=True,
+        spacing=0,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
+        controls=[
+            AnswerStrip(sheet.parts[section], title, display),
+            ft.ListView(
+                expand=True,
+                padding=theme.PAD,
+                spacing=theme.PAD,
+                controls=[
+                    *_entries(sheet, section, display, often=True),
+                    More(sheet, section, display),
+                    Answers(sheet.parts[section], display),
+                    NextButton(sheet.job.id, section),
+                ],
+            ),
+        ],
+    )
+
+
+def _entries(sheet: Sheet, section: str, display: Display, *, often: bool) -> list[ft.Control]:
+    fields = [f.key for f in FIELDS.values() if f.section == section and f.often == often]
+    choices = [c for c in CHOICES.values() if c.section == section and c.often == often]
+    return [
+        *[EntryField(sheet.fields[key], sheet, display, key=key) for key in fields],
+        *[ChoiceField(sheet.choices[c.key], c.label, c.help, c.options, sheet, key=c.key) for c in choices],
+    ]
+
+
+@guarded
+def More(sheet: Sheet, section: str, display: Display) -> ft.Control:
+    """Entries that are needed now and then, behind one tap."""
+    opened, set_opened = ft.use_state(lambda: _any_entered(sheet, section))
+    rare = _entries(sheet, section, display, often=False)
+    if not rare:
+        return ft.Container(height=0)
+    word = "Fewer entries" if opened else "More entries"
+    icon = ft.Icons.EXPAND_LESS if opened else ft.Icons.EXPAND_MORE
+    return ft.Column(
+        spacing=theme.PAD,
+        controls=[
+            ft.TextButton(word, icon=icon, on_click=lambda event: set_opened(not opened)),
+            *(rare if opened else []),
+        ],
+    )
+
+
+def _any_entered(sheet: Sheet, section: str) -> bool:
+    return any(sheet.fields[f.key].typed for f in FIELDS.values() if f.section == section and not f.often)
+
+
+def NextButton(job_id: str, section: str) -> ft.Control:
+    """On to the next section, or back to the sheet after the last."""
+    order = list(SECTIONS)
+    at = order.index(section) + 1
+    label, route = (
+        (f"Next: {SECTIONS[order[at]]}", f"/job/{job_id}/{order[at]}")
+        if at < len(order)
+        else ("Back to the sheet", f"/job/{job_id}")
+    )
+    return ft.FilledTonalButton(label, height=theme.TOUCH + 8, on_click=lambda event: ft.context.page.navigate(route))

@@ -1,0 +1,78 @@
+"""A job as one sheet: a card for each section, in the order of the visit."""
+
+from __future__ import annotations
+
+import flet as ft
+
+from core.job.fields import SECTIONS
+from pwa import theme
+from pwa.components.answer import AnswerBlock
+from pwa.components.banner import Banners
+from pwa.components.guard import guarded
+from pwa.state.sheet import Heading, PartState, Sheet
+from pwa.state.workspace import Preferences, Workspace
+
+
+@guarded
+def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chosen: str = "") -> ft.Control:
+    """Name, place, and the cards."""
+    display = workspace.display(sheet)
+    return ft.ListView(
+        expand=True,
+        padding=theme.PAD,
+        spacing=theme.PAD,
+        controls=[
+            Banners(workspace.standing, workspace),
+            HeadingFields(sheet.heading, sheet),
+            *[
+                SectionCard(sheet.parts[key], title, sheet.job.id, display, chosen == key, key=key)
+                for key, title in SECTIONS.items()
+            ],
+        ],
+    )
+
+
+@guarded
+def HeadingFields(heading: Heading, sheet: Sheet) -> ft.Control:
+    """What the job is called and where it is."""
+    return ft.Column(
+        spacing=theme.GAP,
+        controls=[
+            ft.TextField(
+                label="Name of the job", value=heading.name, on_change=lambda e: sheet.rename(name=e.control.value)
+            ),
+            ft.TextField(label="Place", value=heading.place, on_change=lambda e: sheet.rename(place=e.control.value)),
+        ],
+    )
+
+
+@guarded
+def SectionCard(state: PartState, title: str, job_id: str, display, chosen: bool) -> ft.Control:
+    """One section: its answer in words and one figure; a tap opens it."""
+
+    def open_(event: ft.ControlEvent) -> None:
+        ft.context.page.navigate(f"/job/{job_id}/{state.key}")
+
+    part = state.part
+    body = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display)
+    return ft.Container(
+        ink=True,
+        on_click=open_,
+        bgcolor=ft.Colors.SURFACE,
+        border_radius=theme.RADIUS,
+        border=ft.Border.all(2 if chosen else 1, ft.Colors.PRIMARY if chosen else ft.Colors.OUTLINE_VARIANT),
+        padding=theme.PAD,
+        content=ft.Column(
+            spacing=theme.GAP,
+            controls=[
+                ft.Row(
+                    alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
+                    controls=[
+                        ft.Text(title, theme_style=ft.TextThemeStyle.TITLE_MEDIUM),
+                        ft.Icon(ft.Icons.CHEVRON_RIGHT, color=ft.Colors.ON_SURFACE_VARIANT),
+                    ],
+                ),
+                body,
+            ],
+        ),
+    )

@@ -1,0 +1,167 @@
+"""One open job: what was typed, what it means, what the assessment says of it.
+
+The sheet is the only writer of its job, and calls `changed` with the section after each change. Each field and each part of the assessment is an observable of its own, so
+that a key press redraws one field and one strip. Numbers exist only in the job; the fields hold what was typed.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+
+import flet as ft
+
+from core.errors import UnitError
+from core.job.answers import Part
+from core.job.fields import CHOICES, FIELDS, SECTIONS, Field
+from core.job.record import Entry, Job
+from pwa.text import parse_quantity
+
+
+@ft.observable
+@dataclass
+class FieldState:
+    """One entry on the screen: the text as typed, its unit, where it comes from, what is wrong with it."""
+
+    key: str
+    typed: str = ""
+    unit: str = ""
+    source: str = "measured"
+    refused: str = ""  # why what was typed is not a number with a unit
+    note: str = ""  # how what was typed was understood, where that is not plain
+    remark: str = ""  # what the checks say of the value
+    level: str = ""  # of the remark: warning | error
+
+
+@ft.observable
+@dataclass
+class ChoiceState:
+    """One choice on the screen."""
+
+    key: str
+    value: str
+    made: bool  # by the user; otherwise it is the default
+
+
+@ft.observable
+@dataclass
+class PartState:
+    """One section's assessment; `turn` changes with each new one."""
+
+    key: str
+    turn: int = 0
+    _part: Part | None = None
+
+    @property
+    def part(self) -> Part | None:
+        """The assessment; None until the first has been made."""
+        return self._part
+
+    def put(self, part: Part) -> None:
+        """Take in a new assessment."""
+        self._part = part
+        self.turn += 1
+
+
+@ft.observable
+@dataclass
+class Heading:
+    """Name and place of the job."""
+
+    name: str = ""
+    place: str = ""
+    notes: str = ""
+
+
+class Sheet:
+    """The open job and its verbs."""
+
+    def __init__(self, job: Job, changed: Callable[[Sheet, str], None], units: Mapping[str, str]) -> None:
+        """`units` names the unit of a role or a quantity that this user usually reads it in."""
+        self.job = job
+        self._changed = changed
+        self.heading = Heading(job.name, job.place, job.notes)
+        self.fields = {key: _field_state(FIELDS[key], job.entries.get(key), units) for key in FIELDS}
+        self.choices = {
+            key: ChoiceState(key, job.choices.get(key, choice.default), key in job.choices)
+            for key, choice in CHOICES.items()
+        }
+        self.parts = {key: PartState(key) for key in SECTIONS}
+
+    def type(self, key: str, typed: str) -> None:
+        """Take in what stands in a field now."""
+        state = self.fields[key]
+        state.typed = typed
+        self._enter(key)
+
+    def set_unit(self, key: str, unit: str) -> None:
+        """Say in which unit the number was read; the number stays."""
+        self.fields[key].unit = unit
+        self._enter(key)
+
+    def set_source(self, key: str, source: str) -> None:
+        """Say where the entry comes from."""
+        self.fields[key].source = source
+        self._enter(key)
+
+    def choose(self, key: str, value: str) -> None:
+        """Make a choice."""
+        state = self.choices[key]
+        state.value, state.made = value, True
+        self._put(self.job.with_choice(key, value), CHOICES[key].section)
+
+    def rename(self, name: str | None = None, place: str | None = None, notes: str | None = None) -> None:
+        """Change the words that name the job."""
+        heading = self.heading
+        heading.name = heading.name if name is None else name
+        heading.place = heading.place if place is None else place
+        heading.notes = heading.notes if notes is None else notes
+        self._put(replace(self.job, name=heading.name, place=heading.place, notes=heading.notes), "")
+
+    def take(self, parts: dict[str, Part]) -> None:
+        """Show a new assessment of some sections, and its problems beside their fields."""
+        for key, part in parts.items():
+            self.parts[key].put(part)
+            self._remark(key, part)
+
+    def _enter(self, key: str) -> None:
+        state = self.fields[key]
+        state.refused = state.note = ""
+        if not state.typed.strip():
+            state.remark = state.level = ""
+            self._put(self.job.with_entry(key, None), FIELDS[key].section)
+            return
+        value = None
+        try:
+            reading = parse_quantity(state.typed, FIELDS[key].quantity, state.unit)
+            value, state.unit, state.note = reading.value, reading.unit, reading.note
+        except UnitError as error:
+            state.refused = str(error)
+        entry = Entry(value, state.unit, state.source, typed=state.typed)
+        self._put(self.job.with_entry(key, entry), FIELDS[key].section)
+
+    def _put(self, job: Job, section: str) -> None:
+        self.job = job
+        self._changed(self, section)
+
+    def _remark(self, section: str, part: Part) -> None:
+        said = {problem.field: problem for problem in part.problems}
+        for key, state in self.fields.items():
+            problem = said.get(key)
+            if problem is None and FIELDS[key].section != section:
+                continue
+            remark, level = (problem.text, problem.level) if problem else ("", "")
+            if (remark, level) != (state.remark, state.level):
+                state.remark, state.level = remark, level
+
+
+def _field_state(field: Field, entry: Entry | None, units: Mapping[str, str]) -> FieldState:
+    if entry is None:
+        return FieldState(field.key, unit=_usual_unit(field, units))
+    typed = entry.typed or ("" if entry.value is None else f"{entry.value:g}")
+    return FieldState(field.key, typed, entry.unit, entry.source)
+
+
+def _usual_unit(field: Field, units: Mapping[str, str]) -> str:
+    wanted = units.get(field.role) or units.get(field.quantity)
+    return wanted if wanted in field.units else next(iter(field.units), "")

@@ -1,0 +1,311 @@
+"""The app while it runs: the list of jobs, the open job, the settings, and the verbs that change them.
+
+What needs the device (storage, files, the page that hosts the app) comes in from outside, so that everything here
+runs in a test without a browser.
+"""
+
+from __future__ import annotations
+
+import asyncio
+import logging
+import uuid
+from collections.abc import Awaitable, Callable
+from dataclasses import dataclass, field, replace
+from typing import Any
+
+import flet as ft
+
+from core.errors import TapwrightError
+from core.job.fields import SECTIONS
+from core.job.record import Job
+from pwa.services.autosave import Autosave
+from pwa.services.files import Files, FilesError
+from pwa.services.host import Host
+from pwa.services.storage import JobRow, Storage, StorageError
+from pwa.state.display import UNIT_SETS, Display
+from pwa.state.settings import Settings
+from pwa.state.sheet import Sheet
+from pwa.theme import SCALES, WIDE
+
+log = logging.getLogger("tapwright")
+
+REST = 0.25  # s after the last key press until the sections that are not in view are assessed again
+PAGE = 50  # jobs of the list that are fetched at once
+
+
+@ft.observable
+@dataclass
+class Notice:
+    """One sentence for the user, with an undo where there is one."""
+
+    text: str = ""
+    undo: Callable[[], Awaitable[None]] | None = None
+    turn: int = 0
+
+    def say(self, text: str, undo: Callable[[], Awaitable[None]] | None = None) -> None:
+        """Show a sentence."""
+        self.text, self.undo = text, undo
+        self.turn += 1
+
+
+@ft.observable
+@dataclass
+class JobList:
+    """The list of jobs as it is shown."""
+
+    rows: tuple[JobRow, ...] = ()
+    total: int = 0
+    search: str = ""
+    opened: bool = False  # the storage has been read
+    turn: int = 0  # changes when what was read before may be out of date
+
+
+@ft.observable
+@dataclass
+class Standing:
+    """How the app stands: what is ready, what hinders it."""
+
+    computing: bool = False  # numpy is in, assessments are made
+    read_only: bool = False  # another tab writes
+    update_waits: bool = False
+    trouble: str = ""  # a sentence that stays until it is over
+    wide: bool = False
+
+
+@ft.observable
+@dataclass
+class Preferences:
+    """The settings in force."""
+
+    settings: Settings = field(default_factory=Settings)
+
+
+class Workspace:
+    """The models of the app and the verbs that need more than one of them."""
+
+    def __init__(self, open_storage: Callable[[], Awaitable[Storage]], files: Files, host: Host) -> None:
+        """`open_storage` is awaited once, by `open`; nothing but `open` may be called before."""
+        self._open_storage, self.files, self.host = open_storage, files, host
+        self.jobs, self.standing = JobList(), Standing()
+        self.preferences, self.notice = Preferences(), Notice()
+        self.sheets: dict[str, Sheet] = {}
+        self._assess: Callable[[Job], Any] | None = None
+        self._resting: dict[str, asyncio.Task[None]] = {}
+
+    # Opening
+
+    async def open(self) -> None:
+        """Read what is kept, then bring in the calculator."""
+        try:
+            self.storage = await self._open_storage()
+        except StorageError as error:
+            self.standing.trouble = str(error)
+            return
+        self._autosave = Autosave(self.storage, on_trouble=self._trouble)
+        self.storage.on_writable(self._writable)
+        self.standing.read_only = not self.storage.can_write
+        self.standing.trouble = " ".join(self.storage.notes)
+        self.preferences.settings = Settings.from_text(await self.storage.get_setting("settings"))
+        await self.list_again()
+        await self._bring_in_calculator()
+
+    async def _bring_in_calculator(self) -> None:
+        self.host.on_change(self._host_changed)
+        await self.host.load_numpy()
+        from core.job import assess  # it needs numpy, which has only now arrived
+
+        self._assess = assess
+        self.standing.computing = True
+        for sheet in self.sheets.values():
+            self._assess_sheet(sheet, SECTIONS)
+
+    def _host_changed(self) -> None:
+        self.standing.update_waits = self.host.update_waits()
+
+    async def update(self) -> None:
+        """Change to the new version once everything typed is down."""
+        await self._autosave.flush()
+        await self.host.accept_update()
+
+    def _writable(self) -> None:
+        self.standing.read_only = False
+        self.sheets.clear()
+        self.jobs.turn += 1
+        asyncio.get_running_loop().create_task(self.list_again())
+
+    def resized(self, width: float | None) -> None:
+        """Take note of the width of the window."""
+        wide = (width or 0.0) >= WIDE
+        if wide != self.standing.wide:
+            self.standing.wide = wide
+
+    # The list
+
+    async def list_again(self, search: str | None = None) -> None:
+        """Read the list anew."""
+        jobs = self.jobs
+        jobs.search = jobs.search if search is None else search
+        try:
+            jobs.rows = tuple(await self.storage.list_jobs(jobs.search, limit=PAGE))
+            jobs.total = await self.storage.count_jobs(jobs.search)
+        except StorageError as error:
+            self.standing.trouble = str(error)
+        jobs.opened = True
+
+    async def more(self) -> None:
+        """Fetch the next jobs of the list."""
+        rows = await self.storage.list_jobs(self.jobs.search, limit=PAGE, offset=len(self.jobs.rows))
+        self.jobs.rows += tuple(rows)
+
+    async def new(self) -> str:
+        """Begin an empty job; gives its id."""
+        return await self._add(Job(id=_new_id()))
+
+    async def add_copy(self, job: Job) -> str:
+        """Put a job (a sample, an opened file) on the list under an id of its own."""
+        return await self._add(replace(job, id=_new_id()))
+
+    async def delete(self, job_id: str) -> None:
+        """Take a job off the list, with a way back."""
+        await self._autosave.flush()
+        await self.storage.delete(job_id)
+        self.sheets.pop(job_id, None)
+        await self.list_again()
+
+        async def undo() -> None:
+            await self.storage.undelete(job_id)
+            await self.list_again()
+
+        self.notice.say("Job deleted.", undo)
+
+    # One job
+
+    async def sheet(self, job_id: str) -> Sheet | None:
+        """The open sheet of a job, read from storage the first time; None where there is no such job."""
+        if job_id not in self.sheets:
+            try:
+                job = Job.from_text((await self.storage.load(job_id)).document)
+            except (StorageError, TapwrightError) as error:
+                self.notice.say(str(error))
+                return None
+            self.sheets[job_id] = self._open_sheet(job)
+        return self.sheets[job_id]
+
+    def _open_sheet(self, job: Job) -> Sheet:
+        sheet = Sheet(job, self._changed, UNIT_SETS[self.preferences.settings.unit_set])
+        self._assess_sheet(sheet, SECTIONS)
+        return sheet
+
+    def _changed(self, sheet: Sheet, section: str) -> None:
+        if section:
+            self._assess_sheet(sheet, (section,))
+        self._keep(sheet)
+        job_id = sheet.job.id
+        resting = self._resting.pop(job_id, None)
+        if resting is not None:
+            resting.cancel()
+        self._resting[job_id] = asyncio.get_running_loop().create_task(self._rest(sheet))
+
+    async def _rest(self, sheet: Sheet) -> None:
+        await asyncio.sleep(REST)
+        for section in SECTIONS:
+            self._assess_sheet(sheet, (section,))
+            await asyncio.sleep(0)
+        self._keep(sheet)
+
+    def _assess_sheet(self, sheet: Sheet, sections: Any) -> None:
+        if self._assess is None:
+            return
+        assessment = self._assess(sheet.job)
+        sheet.take({section: getattr(assessment, section) for section in sections})
+
+    def _keep(self, sheet: Sheet) -> None:
+        if self.standing.read_only:
+            return
+        job = sheet.job
+        self._autosave.touch(job.id, job.to_text(), name=job.name, place=job.place, summary=self.summary(sheet))
+
+    def summary(self, sheet: Sheet) -> str:
+        """The answer of a job in one line, for the list."""
+        part = sheet.parts["softener"].part
+        if part is None:
+            return ""
+        if part.headline is None:
+            return part.missing[0].text if part.missing else ""
+        return self.display(sheet).say(part.headline.words)
+
+    def display(self, sheet: Sheet | None = None) -> Display:
+        """How answers are shown: the user's units, hardness in the unit that was typed in this job."""
+        settings = self.preferences.settings
+        own = {}
+        if sheet is not None:
+            unit = sheet.fields["water.hardness"].unit
+            own = {"hardness": unit} if sheet.fields["water.hardness"].typed else {}
+        return Display(settings.unit_set, settings.decimal, SCALES[settings.text], own)
+
+    async def _add(self, job: Job) -> str:
+        sheet = self._open_sheet(job)
+        try:
+            await self.storage.save(job.id, job.to_text(), job.name, job.place, self.summary(sheet))
+        except StorageError as error:
+            self.notice.say(str(error))
+        self.sheets[job.id] = sheet
+        await self.list_again()
+        return job.id
+
+    # Settings, files
+
+    async def set(self, **changes: Any) -> None:
+        """Change settings and keep them."""
+        self.preferences.settings = replace(self.preferences.settings, **changes)
+        try:
+            await self.storage.set_setting("settings", self.preferences.settings.to_text())
+        except StorageError as error:
+            self.notice.say(str(error))
+
+    async def back_up(self) -> None:
+        """Give the user one file with everything."""
+        await self._autosave.flush()
+        await self._give("tapwright-backup.json", await self.storage.backup())
+
+    async def save_job_file(self, job_id: str) -> None:
+        """Give the user the file of one job."""
+        sheet = await self.sheet(job_id)
+        if sheet is not None:
+            await self._give(f"{sheet.job.name.strip() or 'job'}.json", sheet.job.to_text().encode())
+
+    async def _give(self, name: str, data: bytes) -> None:
+        try:
+            await self.files.save(name, data)
+        except FilesError as error:
+            self.notice.say(str(error))
+
+    async def open_file(self) -> str | None:
+        """Take in a job file or a backup; gives the id of a job that was opened."""
+        try:
+            picked = await self.files.pick(["json"])
+        except FilesError as error:
+            self.notice.say(str(error))
+            return None
+        if picked is None:
+            return None
+        try:
+            return await self.add_copy(Job.from_text(picked.data.decode("utf-8", errors="replace")))
+        except TapwrightError as not_a_job:
+            return await self._restore(picked.data, str(not_a_job))
+
+    async def _restore(self, data: bytes, why_not_a_job: str) -> None:
+        try:
+            report = await self.storage.restore(data)
+        except StorageError as error:
+            self.notice.say(f"{error} {why_not_a_job}")
+            return
+        self.notice.say(report.sentence())
+        await self.list_again()
+
+    def _trouble(self, sentence: str) -> None:
+        self.standing.trouble = sentence
+
+
+def _new_id() -> str:
+    return uuid.uuid4().hex

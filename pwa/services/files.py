@@ -90,7 +90,7 @@ def _first(files: Sequence[Any] | None) -> PickedFile | None:
 
 
 def file_name(title: str, ending: str) -> str:
-    """A name that every system accepts for a file about something; "job" where nothing of the title is left."""
+    """A name that every system accepts for a file about something; "job" where nothing is left of it."""
     kept = re.sub(r'[\\/:*?"<>|\x00-\x1f\x7f]+', " ", title)
     kept = " ".join(kept.split())[:LONGEST_NAME].strip(" .")
     return f"{kept or 'job'}.{ending}"

@@ -9,16 +9,14 @@ import signal
 import threading
 from collections.abc import Iterator
 from pathlib import Path
-from typing import Any
 
 import pytest
+from playwright.sync_api import Browser, BrowserContext, Playwright
 
-sync_api = pytest.importorskip("playwright.sync_api")
-pytest.importorskip("flet_web")
+from tests.browser.harness import ARGUMENTS, chromium
+from tests.browser.storage_page import Site, Tab
 
-from tests.browser.storage_page import CHROMIUM, FLAGS, Site, Tab  # noqa: E402
-
-pytestmark = pytest.mark.browser
+FLAGS = [*ARGUMENTS, "--host-resolver-rules=MAP plain.test 127.0.0.1"]  # a name not trusted as 127.0.0.1 is
 
 
 @pytest.fixture(scope="module")
@@ -33,24 +31,15 @@ def port() -> Iterator[int]:
 
 
 @pytest.fixture(scope="module")
-def chromium() -> Iterator[Any]:
-    """What starts Chromium."""
-    if not Path(CHROMIUM).exists():
-        pytest.skip(f"There is no Chromium at {CHROMIUM}.")
-    with sync_api.sync_playwright() as playwright:
-        yield playwright.chromium
-
-
-@pytest.fixture(scope="module")
-def browser(chromium: Any) -> Iterator[Any]:
+def browser(playwright: Playwright) -> Iterator[Browser]:
     """One browser for all tests that do not kill it."""
-    browser = chromium.launch(executable_path=CHROMIUM, args=list(FLAGS))
+    browser = playwright.chromium.launch(executable_path=chromium(), args=FLAGS)
     yield browser
     browser.close()
 
 
 @pytest.fixture
-def context(browser: Any) -> Iterator[Any]:
+def context(browser: Browser) -> Iterator[BrowserContext]:
     """A browser profile that has kept nothing yet."""
     context = browser.new_context()
     yield context
@@ -64,7 +53,7 @@ def url(port: int) -> str:
 
 
 @pytest.fixture(scope="module")
-def shared(browser: Any, port: int) -> Iterator[Tab]:
+def shared(browser: Browser, port: int) -> Iterator[Tab]:
     """One tab for the tests that need no tab of their own; each uses storage under another name."""
     context = browser.new_context()
     yield Tab(context, f"http://127.0.0.1:{port}/")
@@ -350,16 +339,16 @@ def browser_process(profile: Path) -> int:
 
 
 @pytest.mark.skipif(not Path("/proc/self/cmdline").exists(), reason="finds the browser's process in /proc")
-def test_a_killed_browser_loses_nothing_acknowledged(chromium, url, tmp_path):
+def test_a_killed_browser_loses_nothing_acknowledged(playwright, url, tmp_path):
     """Whatever save had returned when the whole browser was killed is there after it is started again."""
     chance = random.Random(2)
     start, acknowledged = 0, {}
-    for round_number in range(3):
-        context = chromium.launch_persistent_context(tmp_path, executable_path=CHROMIUM, args=list(FLAGS))
+    for last in (False, True):
+        context = playwright.chromium.launch_persistent_context(tmp_path, executable_path=chromium(), args=FLAGS)
         tab = Tab(context, url).open()
         if acknowledged:
             start = check_kept(tab, acknowledged)
-        if round_number == 2:
+        if last:
             context.close()
             break
         acknowledged = write_until(tab, start, chance)

@@ -8,7 +8,6 @@ from __future__ import annotations
 import http.server
 import io
 import json
-import os
 import textwrap
 import zipfile
 from pathlib import Path
@@ -18,17 +17,6 @@ import flet_web
 
 HERE = Path(__file__).resolve().parent
 ROOT = HERE.parents[2]
-CHROMIUM = os.environ.get("CHROMIUM", "/usr/bin/chromium")
-FLAGS = (
-    "--no-sandbox",
-    "--disable-gpu",
-    "--disable-quic",
-    "--no-first-run",
-    "--disable-background-networking",
-    "--disable-component-update",
-    "--disable-sync",
-    "--host-resolver-rules=MAP plain.test 127.0.0.1",  # a name that the browser does not trust as it trusts 127.0.0.1
-)
 RUN = """async (code) => {
   try { return {value: await self.pyodide.runPythonAsync(code)} } catch (error) { return {error: String(error)} }
 }"""

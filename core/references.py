@@ -23,9 +23,7 @@ class Reference:
 
 
 REFERENCES: dict[str, Reference] = {
-    "CH-CLASSES": Reference(
-        "Swiss hardness steps in French degrees, as water suppliers print them", "from memory"
-    ),
+    "CH-CLASSES": Reference("Swiss hardness steps in French degrees, as water suppliers print them", "from memory"),
     "DE-TRADE-MONTHLY": Reference(
         "German building-services trade monthly, a worked example to DIN 1988-300",
         "secondary",
@@ -35,8 +33,7 @@ REFERENCES: dict[str, Reference] = {
         "secondary",
     ),
     "DIN1988-300": Reference(
-        "DIN 1988-300, peak flow of drinking-water installations, as a German building-services "
-        "glossary gives it",
+        "DIN 1988-300, peak flow of drinking-water installations, as a German building-services glossary gives it",
         "secondary",
     ),
     "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
@@ -57,6 +54,7 @@ REFERENCES: dict[str, Reference] = {
         "International Plumbing Code 2018, appendix E, tables E103.3(2) and E103.3(3)",
         "secondary",
     ),
+    "ISO6059": Reference("ISO 6059:1984, sum of calcium and magnesium by EDTA titration", "from memory"),
     "IUPAC21": Reference(
         "IUPAC CIAAW, Standard atomic weights 2021 (abridged or conventional values)",
         "checked",

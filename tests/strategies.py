@@ -11,9 +11,7 @@ EVERY_UNIT: tuple[Unit, ...] = tuple(unit for quantity in QUANTITIES for unit in
 
 any_float = st.floats(allow_nan=True, allow_infinity=True)
 finite = st.floats(allow_nan=False, allow_infinity=False)
-readings = st.floats(
-    min_value=1e-6, max_value=1e6
-)  # what a kit, a meter or a bill may say, whatever the unit
+readings = st.floats(min_value=1e-6, max_value=1e6)  # what a kit, a meter or a bill may say, whatever the unit
 hardnesses = st.floats(min_value=0.0, max_value=2000.0)  # mg/L CaCO3, from softened to brackish
 shares = st.floats(min_value=0.0, max_value=1.0)
 
@@ -28,12 +26,8 @@ def units_of_one_quantity(count: int) -> st.SearchStrategy[tuple[Unit, ...]]:
 
 def ways_to_write() -> st.SearchStrategy[tuple[str, Unit]]:
     """A symbol or an alias of a unit, in any letter case and with stray spaces, and the unit."""
-    written = every_unit.flatmap(
-        lambda unit: st.tuples(st.sampled_from((unit.symbol, *unit.aliases)), st.just(unit))
-    )
-    dressed = st.sampled_from(
-        (str, str.lower, str.upper, lambda text: f"  {text} ", lambda text: f"{text}\n")
-    )
+    written = every_unit.flatmap(lambda unit: st.tuples(st.sampled_from((unit.symbol, *unit.aliases)), st.just(unit)))
+    dressed = st.sampled_from((str, str.lower, str.upper, lambda text: f"  {text} ", lambda text: f"{text}\n"))
     return st.tuples(written, dressed).map(lambda drawn: (drawn[1](drawn[0][0]), drawn[0][1]))
 
 

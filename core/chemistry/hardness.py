@@ -179,9 +179,7 @@ def bicarbonate_alkalinity(p: ArrayLike, t: ArrayLike) -> Number:
 
 def titration_split(p: ArrayLike, t: ArrayLike) -> TitrationSplit:
     """Hydroxide, carbonate and bicarbonate from both end points of a titration [SM2320B]. [mg/L CaCO3]"""
-    return TitrationSplit(
-        hydroxide_alkalinity(p, t), carbonate_alkalinity(p, t), bicarbonate_alkalinity(p, t)
-    )
+    return TitrationSplit(hydroxide_alkalinity(p, t), carbonate_alkalinity(p, t), bicarbonate_alkalinity(p, t))
 
 
 @formula(

@@ -13,8 +13,17 @@ Factors are kept at full precision; rounding is a matter of showing. A plain num
 from __future__ import annotations
 
 from core.units.conversion import convert
-from core.units.lookup import QUANTITIES, find_unit, quantity_named, units_of
+from core.units.lookup import QUANTITIES, find_unit, possible_units, quantity_named, units_of
 from core.units.unit import Unit
 from core.units.water import HARDNESS_UNITS
 
-__all__ = ["HARDNESS_UNITS", "QUANTITIES", "Unit", "convert", "find_unit", "quantity_named", "units_of"]
+__all__ = [
+    "HARDNESS_UNITS",
+    "QUANTITIES",
+    "Unit",
+    "convert",
+    "find_unit",
+    "possible_units",
+    "quantity_named",
+    "units_of",
+]

@@ -20,9 +20,7 @@ _SAME = 1e-12  # two ratios closer than this are one conversion
 
 
 @overload
-def convert(
-    value: float, from_unit: str | Unit, to_unit: str | Unit, quantity: str | None = None
-) -> float: ...
+def convert(value: float, from_unit: str | Unit, to_unit: str | Unit, quantity: str | None = None) -> float: ...
 @overload
 def convert(
     value: ArrayLike, from_unit: str | Unit, to_unit: str | Unit, quantity: str | None = None
@@ -52,9 +50,7 @@ def convert(value, from_unit, to_unit, quantity=None):  # type: ignore[no-untype
     return _convert_array(value, from_zero, ratio, to_zero)
 
 
-def _convert_array(
-    value: ArrayLike, from_zero: float, ratio: float, to_zero: float
-) -> float | NDArray[float64]:
+def _convert_array(value: ArrayLike, from_zero: float, ratio: float, to_zero: float) -> float | NDArray[float64]:
     import numpy as np  # here, so that a plain number is converted before numpy is there
 
     try:
@@ -63,9 +59,7 @@ def _convert_array(
             raise TypeError
         numbers = given.astype(float)
     except (TypeError, ValueError, OverflowError):
-        raise InputError(
-            "value", value, "The value to convert must be a number or an array of numbers."
-        ) from None
+        raise InputError("value", value, "The value to convert must be a number or an array of numbers.") from None
     with np.errstate(over="ignore", invalid="ignore"):
         result = (numbers - from_zero) * ratio + to_zero
     return float(result) if result.ndim == 0 else result
@@ -90,9 +84,7 @@ def _pair(from_unit: str | Unit, to_unit: str | Unit, quantity: str | None) -> t
         raise _unlike(from_unit, to_unit)
     one, other = pairs[0]
     ratio = one.factor / other.factor
-    if one.quantity == "hardness" or all(
-        math.isclose(a.factor / b.factor, ratio, rel_tol=_SAME) for a, b in pairs
-    ):
+    if one.quantity == "hardness" or all(math.isclose(a.factor / b.factor, ratio, rel_tol=_SAME) for a, b in pairs):
         return one, other
     raise _which_quantity(pairs)
 

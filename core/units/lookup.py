@@ -66,6 +66,12 @@ def find_unit(text: str | Unit, quantity: str | None = None) -> Unit:
     raise UnitError(_unknown(typed, name))
 
 
+def possible_units(text: str) -> tuple[Unit, ...]:
+    """Every unit that a text can be, at most one for each quantity, hardness first; empty if there is none."""
+    typed = str(text)[: LONGEST + 1]
+    return tuple(unit for quantity in QUANTITIES if isinstance(unit := meaning(typed, quantity), Unit))
+
+
 @lru_cache(maxsize=4096)
 def meaning(text: str, quantity: str) -> Found:
     """What a text means as a unit of this quantity: the unit, a tuple of choices, or None."""

@@ -131,9 +131,7 @@ def test_there_and_back(value, pair):
     one, other = pair
     back = convert(convert(value, one, other), other, one)
 
-    zero = abs(one.offset) + abs(
-        other.offset
-    )  # a temperature is exact to its distance from the furthest zero
+    zero = abs(one.offset) + abs(other.offset)  # a temperature is exact to its distance from the furthest zero
     assert math.isclose(back, value, rel_tol=EPSILON, abs_tol=EPSILON * zero)
 
 

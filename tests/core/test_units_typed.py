@@ -59,9 +59,7 @@ WRITTEN = {
     "share": {"%": ["percent", "per cent"]},
 }
 SYMBOLS = {unit.symbol for table in REGISTRY.values() for unit in table}
-CASES = [
-    (q, symbol, text) for q, found in WRITTEN.items() for symbol, texts in found.items() for text in texts
-]
+CASES = [(q, symbol, text) for q, found in WRITTEN.items() for symbol, texts in found.items() for text in texts]
 
 ASKED_BACK = [  # text, quantity, choices that must be among those offered
     ("°F", None, {"°fH", "°F (temperature)"}),
@@ -159,9 +157,7 @@ def test_no_way_of_writing_means_two_things(quantity):
 
 def test_unknown_unit_says_what_is_accepted():
     """A refusal names the text, the quantity and the units that would do."""
-    with pytest.raises(
-        UnitError, match="“furlong” is not a unit of hardness known here; accepted are mg/L CaCO3"
-    ):
+    with pytest.raises(UnitError, match="“furlong” is not a unit of hardness known here; accepted are mg/L CaCO3"):
         find_unit("furlong", "hardness")
     with pytest.raises(UnitError, match="The unit is missing; accepted are °C, °F, K"):
         find_unit(" ", "temperature")

@@ -46,9 +46,7 @@ class Row:
         assert not missing, f"{self.id}: nothing computed for {sorted(missing)}"
         for name, wanted in self.expected.items():
             got = actual[name]
-            said = (
-                f"{self.id} {self.what}: {name} is {got!r}, {self.source} has {wanted!r} ({self.tolerance})"
-            )
+            said = f"{self.id} {self.what}: {name} is {got!r}, {self.source} has {wanted!r} ({self.tolerance})"
             if isinstance(wanted, float):
                 assert self._near(float(got), wanted), said  # type: ignore[arg-type]
             else:

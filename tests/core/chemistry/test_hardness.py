@@ -66,9 +66,7 @@ def test_alkalinity_goes_to_calcium_first(calcium, magnesium, alkalinity):
 
     assert min(parts) >= 0
     assert_allclose(parts.carbonate_calcium + parts.non_carbonate_calcium, calcium, rtol=1e-12, atol=1e-9)
-    assert_allclose(
-        parts.carbonate_magnesium + parts.non_carbonate_magnesium, magnesium, rtol=1e-12, atol=1e-9
-    )
+    assert_allclose(parts.carbonate_magnesium + parts.non_carbonate_magnesium, magnesium, rtol=1e-12, atol=1e-9)
     assert parts.carbonate_magnesium == 0 or parts.non_carbonate_calcium == 0
 
 
@@ -117,7 +115,5 @@ def test_broadcasts(function):
 
 def test_bicarbonate_of_acid_capacity():
     """K_S4.3 of 4.00 mmol/L is 3.95 mmol/L of bicarbonate (DIN 38409-7, from memory); never below zero."""
-    assert_allclose(
-        h.bicarbonate_of_acid_capacity([4.0, 0.02, np.nan]), [3.95, 0.0, np.nan], rtol=0, atol=1e-12
-    )
+    assert_allclose(h.bicarbonate_of_acid_capacity([4.0, 0.02, np.nan]), [3.95, 0.0, np.nan], rtol=0, atol=1e-12)
     assert type(h.bicarbonate_of_acid_capacity(4)) is float

@@ -23,7 +23,18 @@ class Reference:
 
 
 REFERENCES: dict[str, Reference] = {
-    "CH-CLASSES": Reference("Swiss hardness steps in French degrees, as water suppliers print them", "from memory"),
+    "BP79": Reference(
+        "Bradley, D.J. and Pitzer, K.S., 1979, J. Phys. Chem. 83, 1599: dielectric constant of water",
+        "secondary",
+    ),
+    "CH-CLASSES": Reference(
+        "Swiss hardness steps in French degrees, as water suppliers print them",
+        "from memory",
+    ),
+    "DAVIES62": Reference(
+        "Davies, C.W., 1962, Ion Association: the activity coefficient with the term 0.3 I",
+        "secondary",
+    ),
     "DE-TRADE-MONTHLY": Reference(
         "German building-services trade monthly, a worked example to DIN 1988-300",
         "secondary",
@@ -36,12 +47,22 @@ REFERENCES: dict[str, Reference] = {
         "DIN 1988-300, peak flow of drinking-water installations, as a German building-services glossary gives it",
         "secondary",
     ),
-    "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
+    "DIN38404-10": Reference(
+        "DIN 38404-10: Calcitsättigung eines Wassers (C 10), 2012",
+        "from memory",
+    ),
+    "DIN38409-6": Reference(
+        "DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L",
+        "from memory",
+    ),
     "DIN38409-7": Reference(
         "DIN 38409-7, acid and base capacity (H 7), with the correction for CO2 at the end point",
         "from memory",
     ),
-    "EPA-SODIUM": Reference("US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006", "checked"),
+    "EPA-SODIUM": Reference(
+        "US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006",
+        "checked",
+    ),
     "EU2020-2184": Reference(
         "Directive (EU) 2020/2184 on the quality of water intended for human consumption",
         "from memory",
@@ -54,14 +75,32 @@ REFERENCES: dict[str, Reference] = {
         "International Plumbing Code 2018, appendix E, tables E103.3(2) and E103.3(3)",
         "secondary",
     ),
-    "ISO6059": Reference("ISO 6059:1984, sum of calcium and magnesium by EDTA titration", "from memory"),
+    "ISO6059": Reference(
+        "ISO 6059:1984, sum of calcium and magnesium by EDTA titration",
+        "from memory",
+    ),
     "IUPAC21": Reference(
         "IUPAC CIAAW, Standard atomic weights 2021 (abridged or conventional values)",
         "checked",
     ),
-    "NSPC-B54": Reference("National Standard Plumbing Code, table B.5.4", "checked"),
+    "KESTIN78": Reference(
+        "Kestin, J., Sokolov, M. and Wakeham, W.A., 1978, J. Phys. Chem. Ref. Data 7, 941: viscosity of water",
+        "from memory",
+    ),
+    "NSPC-B54": Reference(
+        "National Standard Plumbing Code, table B.5.4",
+        "checked",
+    ),
     "OPERATOR-TEXT": Reference(
         "Operator-training text on softener cycles and a copied chapter of an industrial water handbook",
+        "secondary",
+    ),
+    "PA13": Reference(
+        "Parkhurst, D.L. and Appelo, C.A.J., 2013, USGS Techniques and Methods 6-A43: forms of the activity coefficients, Debye-Hückel slopes, activity of water",
+        "secondary",
+    ),
+    "PB82": Reference(
+        "Plummer, L.N. and Busenberg, E., 1982, Geochim. Cosmochim. Acta 46, 1011: solubilities of calcite, aragonite and vaterite, 0 to 90 °C",
         "secondary",
     ),
     "REU2016": Reference(
@@ -76,12 +115,21 @@ REFERENCES: dict[str, Reference] = {
         "Standard Methods for the Examination of Water and Wastewater, 2320 B, alkalinity by titration",
         "from memory",
     ),
+    "SM2330": Reference(
+        "Standard Methods for the Examination of Water and Wastewater, 2330, calcium carbonate saturation",
+        "from memory",
+    ),
     "SM2340B": Reference(
         "Standard Methods for the Examination of Water and Wastewater, 2340 B, hardness by calculation",
         "from memory",
     ),
+    "TJ74": Reference(
+        "Truesdell, A.H. and Jones, B.F., 1974, J. Res. U.S. Geol. Survey 2, 233: ion sizes, extended Debye-Hückel form",
+        "from memory",
+    ),
     "TM5-813-1": Reference(
-        "US Army, TM 5-813-1 Water Supply: Sources and General Considerations, table 4-1", "checked"
+        "US Army, TM 5-813-1 Water Supply: Sources and General Considerations, table 4-1",
+        "checked",
     ),
     "TRADE-BACKWASH": Reference(
         "A trade page and an equipment manual on backwash rate and water temperature",
@@ -95,18 +143,21 @@ REFERENCES: dict[str, Reference] = {
         "Two independent trade pages on softener sizing: capacity by salt dose, iron rule, intervals",
         "secondary",
     ),
-    "TRINKWV2023": Reference("Trinkwasserverordnung of 20 June 2023", "secondary"),
+    "TRINKWV2023": Reference(
+        "Trinkwasserverordnung of 20 June 2023",
+        "secondary",
+    ),
     "UFC3-240": Reference(
         "US Department of Defense, UFC 3-240-13FN (25 May 2005), pages on softeners",
         "checked",
     ),
     "UK-EFRA2018": Reference(
-        "House of Commons Environment, Food and Rural Affairs Committee, report on water, section on "
-        "reducing demand (2018)",
+        "House of Commons Environment, Food and Rural Affairs Committee, report on water, section on reducing demand (2018)",
         "checked",
     ),
     "UK-LEAFLETS": Reference(
-        "Hardness leaflets of water companies in the south west and the north west of England", "checked"
+        "Hardness leaflets of water companies in the south west and the north west of England",
+        "checked",
     ),
     "US-DISTRICT": Reference(
         "Softening best-practice list of a sewerage district in the US Midwest",
@@ -124,15 +175,40 @@ REFERENCES: dict[str, Reference] = {
         "USGS Circular 1441, Estimated use of water in the United States in 2015; its domestic-use page",
         "secondary",
     ),
+    "USGS15": Reference(
+        "USGS thermodynamic data file phreeqc.dat in its form of 2015, with the carbonate set of Plummer and Busenberg",
+        "checked",
+    ),
+    "USGS24": Reference(
+        "USGS thermodynamic data file phreeqc.dat of 22 May 2024",
+        "checked",
+    ),
     "VAC590-900": Reference(
         "Virginia Administrative Code 12VAC5-590-900, cation exchange softening",
         "checked",
     ),
-    "WHO-GDWQ": Reference("World Health Organization, Guidelines for Drinking-water Quality", "from memory"),
+    "WATEQ4F": Reference(
+        "USGS thermodynamic data file wateq4f.dat (Ball and Nordstrom, 1991)",
+        "checked",
+    ),
+    "WHO-GDWQ": Reference(
+        "World Health Organization, Guidelines for Drinking-water Quality",
+        "from memory",
+    ),
     "WHO-HARDNESS": Reference(
         "World Health Organization 2011, Hardness in Drinking-water (background), as a page quotes it",
         "secondary",
     ),
-    "WRMG": Reference("Germany, Wasch- und Reinigungsmittelgesetz (WRMG) of 2007, § 9 (2)", "checked"),
-    "WRMG-1987": Reference("Germany, the detergent act before 2007, four hardness ranges", "from memory"),
+    "WP02": Reference(
+        "Wagner, W. and Pruss, A., 2002, J. Phys. Chem. Ref. Data 31, 387: density along the boiling line",
+        "secondary",
+    ),
+    "WRMG": Reference(
+        "Germany, Wasch- und Reinigungsmittelgesetz (WRMG) of 2007, § 9 (2)",
+        "checked",
+    ),
+    "WRMG-1987": Reference(
+        "Germany, the detergent act before 2007, four hardness ranges",
+        "from memory",
+    ),
 }

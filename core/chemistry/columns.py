@@ -1,0 +1,214 @@
+"""Waters as columns: the fields of a Solution laid out for the equilibrium loop, and what comes back from it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from core.chemistry.equilibrium import ITERATIONS, State, solve
+from core.chemistry.model import ALWAYS, LN10, C, H, Model, model_for
+from core.chemistry.problem import CLOSED, KNOWN_PH_ALK, KNOWN_PH_DIC, NOTHING, OPEN, Problem
+from core.chemistry.reactions import GAS_CONSTANTS
+from core.chemistry.solution import IONS, TOTALS, Solution, Value, solved
+from core.chemistry.thermodynamics import evaluate
+
+Floats = NDArray[np.float64]
+
+MILLI = 1e-3
+MOST_CARBON = 10.0  # mol/kg; far above what water holds at any pressure met
+OK, UNKNOWN, HYDROXIDE, CARBON, LOST = range(5)
+REASONS = (
+    "",
+    "An input is not known (NaN).",
+    "At this pH hydroxide alone exceeds the alkalinity given: pH and alkalinity do not fit together.",
+    "This pH and alkalinity would need more dissolved CO2 than water holds: they do not fit together.",
+    f"No equilibrium was found within {ITERATIONS} steps.",
+)
+
+
+@dataclass(slots=True)
+class Columns:
+    """Flat arrays of n waters, mol/kg: what the loop works on, and how to give its results their shape back."""
+
+    shape: tuple[int, ...]
+    data: str
+    temp_c: Floats
+    components: tuple[str, ...]
+    totals: Floats
+    sulfur: Floats
+    ph: Floats | None
+    alkalinity: Floats | None
+    dic: Floats | None
+    why: NDArray[np.int8]
+
+    def out(self, flat: Floats) -> Value:
+        """A result in the shape of the water: a float for one water."""
+        return float(flat[0]) if self.shape == () else flat.reshape(self.shape)
+
+    def reasons(self) -> str | NDArray[np.object_]:
+        """Why a water has no answer, in words; empty where it has one."""
+        if self.shape == ():
+            return REASONS[self.why[0]]
+        return np.array(REASONS, dtype=object)[self.why].reshape(self.shape)
+
+    def part(self, rows: NDArray[np.intp]) -> Columns:
+        """Some of the waters, as a row."""
+        parts = (None if p is None else p[rows] for p in (self.ph, self.alkalinity, self.dic))
+        return Columns(
+            (rows.size,), self.data, self.temp_c[rows], self.components, self.totals[:, rows], self.sulfur[rows],
+            *parts, self.why[rows],
+        )  # fmt: skip
+
+    def model(self, pairs: bool = True) -> Model:
+        """The species of these waters."""
+        return model_for(self.data, self.components, pairs)
+
+
+def columns(solution: Solution, data: str | None = None, *others: Value) -> Columns:
+    """The fields of a water as flat columns; `others` only widen the shape they broadcast to."""
+    shape = np.broadcast_shapes(solution.shape, *(np.shape(o) for o in others))
+    present = {IONS[name]: value for name, value in solution.items() if name in IONS}
+    components = tuple(c for c in IONS.values() if c in present or c in ALWAYS)
+    totals = np.zeros((len(components), int(np.prod(shape, dtype=int))))
+    for i, component in enumerate(components):
+        if component in present:
+            totals[i] = MILLI * flat(present[component], shape)
+    known = {name: getattr(solution, name) for name in ("ph", "alkalinity", "dic")}
+    if all(value is not None for value in known.values()):
+        known["ph"] = None  # a solved water: alkalinity and carbon are what is conserved
+    made = Columns(
+        shape,
+        data or solution.data,
+        flat(solution.temp_c, shape).copy(),
+        components,
+        totals,
+        MILLI * flat(solution.so4, shape),
+        None if known["ph"] is None else flat(known["ph"], shape).copy(),
+        None if known["alkalinity"] is None else MILLI * flat(known["alkalinity"], shape),
+        None if known["dic"] is None else MILLI * flat(known["dic"], shape),
+        np.zeros(totals.shape[1], dtype=np.int8),
+    )
+    _set_aside_unknown(made)
+    return made
+
+
+def flat(value: Value, shape: tuple[int, ...]) -> Floats:
+    """A field as one flat column."""
+    return np.broadcast_to(np.asarray(value, dtype=float), shape).reshape(-1)
+
+
+def _set_aside_unknown(made: Columns) -> None:
+    """Mark waters with an unknown input, and put plain water in their place so that the loop stays quiet."""
+    parts = [made.temp_c, made.sulfur, *(p for p in (made.ph, made.alkalinity, made.dic) if p is not None)]
+    unknown = np.isnan(sum(parts) + made.totals.sum(axis=0))
+    if not unknown.any():
+        return
+    made.why[unknown] = UNKNOWN
+    made.totals[:, unknown] = 0.0
+    for part, plain in (
+        (made.temp_c, 25.0),
+        (made.sulfur, 0.0),
+        (made.ph, 7.0),
+        (made.alkalinity, 0.0),
+        (made.dic, 0.0),
+    ):
+        if part is not None:
+            part[unknown] = plain
+
+
+def balance(cols: Columns) -> Floats:
+    """Totals of protons (relative to CO3-2 and H2O), carbon and sulfur from alkalinity and dissolved carbon. [mol/kg]"""
+    none = np.zeros_like(cols.temp_c)
+    alkalinity, dic = (none if part is None else part for part in (cols.alkalinity, cols.dic))
+    return np.array([2.0 * dic - alkalinity, np.maximum(dic, NOTHING), np.maximum(cols.sulfur, NOTHING)])
+
+
+def find(cols: Columns, **more: Any) -> State:
+    """Equilibrium of waters whose alkalinity and dissolved carbon are known (or the CO2 gas they are open to)."""
+    activity = more.pop("activity", True)
+    closure = more.pop("closure", CLOSED)
+    problem = Problem(
+        cols.model(more.pop("pairs", True)),
+        cols.temp_c,
+        cols.totals,
+        balance(cols),
+        closure,
+        activity=activity,
+        **more,
+    )
+    return _marked(cols, solve(problem))
+
+
+def settle(cols: Columns) -> State | None:
+    """Make sure alkalinity and dissolved carbon are known; the state found on the way, if pH was one of the two."""
+    if cols.ph is None:
+        return None
+    by_alkalinity = cols.alkalinity is not None
+    sulfur = np.maximum(cols.sulfur, NOTHING)
+    carbon = 0.5 * cols.alkalinity if cols.alkalinity is not None else np.maximum(cols.dic, NOTHING)
+    problem = Problem(
+        cols.model(),
+        cols.temp_c,
+        cols.totals,
+        np.array([np.zeros_like(carbon), carbon, sulfur]),
+        KNOWN_PH_ALK if by_alkalinity else KNOWN_PH_DIC,
+        ln_h=-LN10 * cols.ph,
+    )
+    state = _marked(cols, solve(problem))
+    if by_alkalinity:
+        cols.dic = state.sums[C].copy()
+    else:
+        cols.alkalinity = 2.0 * state.sums[C] - state.sums[H]
+    return state
+
+
+def _marked(cols: Columns, state: State) -> State:
+    """Write down which waters were not solved and why."""
+    lost = ~state.converged & (cols.why == OK)
+    no_carbon = lost & (state.x[C] < -40.0) & (cols.alkalinity is not None)
+    cols.why[lost] = LOST
+    cols.why[no_carbon] = HYDROXIDE
+    with np.errstate(invalid="ignore"):
+        cols.why[(cols.why != UNKNOWN) & (cols.why != HYDROXIDE) & (state.sums[C] > MOST_CARBON)] = CARBON
+    return state
+
+
+def ln_gas(cols: Columns, p_co2: Value) -> Floats:
+    """ln of {CO3-2}{H+}²/a_w in water open to CO2 at a partial pressure in atm."""
+    model = cols.model()
+    ln_k_gas = LN10 * evaluate(GAS_CONSTANTS[cols.data], cols.temp_c)
+    ln_k_co2 = LN10 * evaluate(model.species[model.index("CO2")].log_k, cols.temp_c)
+    return ln_k_gas + np.log(flat(p_co2, cols.shape)) - ln_k_co2
+
+
+def find_open(cols: Columns, p_co2: Value) -> State:
+    """Equilibrium of waters open to CO2 gas; their dissolved carbon follows the gas, alkalinity stays."""
+    state = find(cols, closure=OPEN, ln_gas=ln_gas(cols, p_co2))
+    cols.dic = state.sums[C].copy()
+    return state
+
+
+def with_nan(cols: Columns, flat_values: Floats) -> Floats:
+    """Results with NaN where a water has no answer."""
+    if not cols.why.any():
+        return flat_values
+    return np.where(cols.why == OK, flat_values, np.nan)
+
+
+def as_solution(cols: Columns, state: State, given: Solution, **changed: Floats) -> Solution:
+    """The water found, holding pH, alkalinity and dissolved carbon; `changed` are flat columns in mol/kg."""
+    values: dict[str, Any] = {"data": cols.data}
+    for name in TOTALS:
+        value = getattr(given, name)
+        if name in changed:
+            values[name] = cols.out(with_nan(cols, changed[name] / MILLI))
+        else:
+            values[name] = value
+    values["temp_c"] = cols.out(cols.temp_c)
+    values["ph"] = cols.out(with_nan(cols, -state.x[H] / LN10))
+    values["alkalinity"] = cols.out(with_nan(cols, (2.0 * state.sums[C] - state.sums[H]) / MILLI))
+    values["dic"] = cols.out(with_nan(cols, state.sums[C] / MILLI))
+    return solved(**values)

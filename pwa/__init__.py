@@ -1,0 +1,1 @@
+"""The app: screens on the core, and the bundle that makes it installable."""

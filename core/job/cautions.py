@@ -10,44 +10,44 @@ from core.job.answers import Caution
 LOCAL_CODE = Caution(
     "local_code",
     "note",
-    "Connection, backflow protection and the drain are work for a licensed installer under the local code, which "
-    "comes before anything said here.",
+    "Connection, backflow protection and the drain are work for a licensed installer under the local code, "
+    "which comes before anything said here.",
     "common practice, no source",
 )
 AIR_GAP = Caution(
     "air_gap",
     "care",
-    "The drain hose ends in an air gap of two pipe diameters, at least 25 mm (1 in), never in a direct connection: waste "
-    "water must not get back into the drinking water.",
+    "The drain hose ends in an air gap of two pipe diameters, at least 25 mm (1 in), never in a direct "
+    "connection: waste water must not get back into the drinking water.",
     "UPC2021-603",
 )
 SODIUM = Caution(
     "sodium",
     "care",
-    "Softening with common salt adds sodium. People on a sodium-restricted diet, and whoever prepares food for infants, "
-    "need water from a tap that is not softened; ask a physician.",
+    "Softening with common salt adds sodium. People on a sodium-restricted diet, and whoever prepares food for "
+    "infants, need water from a tap that is not softened; ask a physician.",
     "EPA-SODIUM",
 )
 POTASSIUM = Caution(
     "potassium",
     "care",
-    "Softening with potassium chloride adds potassium. People with kidney disease or on certain medicines must not drink "
-    "it without asking their physician.",
+    "Softening with potassium chloride adds potassium. People with kidney disease or on certain medicines must "
+    "not drink it without asking their physician.",
     "common practice, no source",
 )
 METALS = Caution(
     "metals",
     "care",
-    "Old lead pipes, new solder joints, copper with sour water and unprotected galvanised steel deserve a test of the tap "
-    "water after softening. Trials found no steady rise of metals, and a regulator advises against softening the "
-    "drinking tap: both stand.",
+    "Old lead pipes, new solder joints, copper with sour water and unprotected galvanised steel deserve a test "
+    "of the tap water after softening. Trials found no steady rise of metals, and a regulator advises against "
+    "softening the drinking tap: both stand.",
     "EPA-SOFTENING",
 )
 NOT_DISINFECTED = Caution(
     "not_disinfected",
     "care",
-    "A softener does not disinfect and does not remove nitrate, arsenic, bacteria or organics. Have a private well tested "
-    "for those.",
+    "A softener does not disinfect and does not remove nitrate, arsenic, bacteria or organics. Have a private "
+    "well tested for those.",
     "common practice, no source",
 )
 IRON = Caution(

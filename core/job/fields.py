@@ -65,6 +65,11 @@ class Field:
         return self.key.partition(".")[0]
 
     @property
+    def usual_source(self) -> str:
+        """Where it comes from until the user says otherwise: what the kit reads is measured, the rest is told."""
+        return "measured" if self.section == "water" or self.key in ("blend.softened", "blend.measured") else "told"
+
+    @property
     def core_unit(self) -> str:
         """The unit in which the core reckons with it; "" for plain numbers."""
         return CORE_UNITS.get(self.role) or CORE_UNITS[self.quantity] if self.quantity else ""

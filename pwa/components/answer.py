@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import flet as ft
@@ -15,6 +16,7 @@ from pwa.state.sheet import PartState
 
 TRACK = 4.0
 BAND = 12.0
+APART = 1.1  # of the line's 2, between ticks whose names share a line
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,14 +50,14 @@ def AnswerLine(answer: Answer, display: Display) -> ft.Control | None:
         layers.append(_bar(scale.x(answer.band[0]), scale.x(answer.band[1]), BAND, ft.Colors.PRIMARY_CONTAINER))
     layers += [_tick(scale.x(mark.at.value), 16.0, 2.0, ft.Colors.ON_SURFACE_VARIANT) for mark in marks]
     layers.append(_tick(scale.x(here), 24.0, 6.0, ft.Colors.PRIMARY))
-    names = [_name(scale.x(mark.at.value), f"{mark.name} {display.show(mark.at)}") for mark in marks]
+    names = [(scale.x(mark.at.value), f"{mark.name} {display.show(mark.at)}") for mark in marks]
     return ft.Semantics(
         label=_spoken(answer, display),
         exclude_semantics=True,
         container=True,
         content=ft.Column(
             spacing=2,
-            controls=[ft.Stack(height=26, controls=layers), *names],
+            controls=[ft.Stack(height=26, controls=layers), *_name_rows(names)],
         ),
     )
 
@@ -79,6 +81,19 @@ def _tick(x: float, height: float, width: float, colour: str) -> ft.Control:
         alignment=ft.Alignment(x, 0.0),
         content=ft.Container(width=width, height=height, bgcolor=colour, border_radius=width / 2),
     )
+
+
+def _name_rows(names: list[tuple[float, str]]) -> list[ft.Control]:
+    """The names of the ticks, on as few lines as they fit on without running into each other."""
+    rows: list[list[tuple[float, str]]] = []
+    for x, text in sorted(names):
+        for row in rows:
+            if x - row[-1][0] >= APART:
+                row.append((x, text))
+                break
+        else:
+            rows.append([(x, text)])
+    return [ft.Stack(controls=[_name(x, text) for x, text in row]) for row in rows]
 
 
 def _name(x: float, text: str) -> ft.Control:
@@ -145,9 +160,9 @@ def _badge(name: str) -> ft.Control:
 
 
 @guarded
-def AnswerStrip(state: PartState, title: str, display: Display) -> ft.Control:
-    """The strip that stays in sight while entries change: the section's headline."""
-    part = state.part
+def AnswerStrip(state: PartState, title: str, shown: Callable[[], Display]) -> ft.Control:
+    """The strip that stays in sight while entries change: the section's headline; `shown` says in which units."""
+    part, display = state.part, shown()
     content = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display)
     return ft.Container(
         bgcolor=ft.Colors.SURFACE_CONTAINER_LOWEST,

@@ -37,6 +37,7 @@ def Banners(standing: Any, workspace: Any) -> ft.Control:
     if not rows:
         return ft.Container(height=0)
     return ft.Container(
+        margin=ft.Margin.only(left=theme.PAD, right=theme.PAD, top=theme.PAD),
         padding=theme.PAD,
         border_radius=theme.RADIUS,
         border=ft.Border.all(1, ft.Colors.OUTLINE),

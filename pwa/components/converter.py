@@ -5,19 +5,20 @@ from __future__ import annotations
 import flet as ft
 
 from core.errors import UnitError
-from core.units import HARDNESS_UNITS, convert
+from core.units import convert
 from pwa import theme
+from pwa.components.box import Box
 from pwa.components.guard import guarded
-from pwa.state.display import Display
+from pwa.state.display import Display, unit_shown
 from pwa.text import format_number, parse_quantity
 
-SHOWN = HARDNESS_UNITS[:8]
+SHOWN = ("gpg", "°dH", "mg/L CaCO3", "mmol/L", "°fH", "°e", "meq/L", "mg/L Ca")
 
 
 @guarded
 def Converter(display: Display, typed: str, unit: str, change) -> ft.Control:
     """A field and a tile for each unit; `change(typed, unit)` when either changes."""
-    value, message = None, None
+    value, message = None, ""
     if typed.strip():
         try:
             reading = parse_quantity(typed, quantity="hardness", unit=unit)
@@ -27,15 +28,17 @@ def Converter(display: Display, typed: str, unit: str, change) -> ft.Control:
     tiles = [Tile(name, unit, value, display, lambda name=name: change(typed, name)) for name in SHOWN]
     return ft.Column(
         spacing=theme.GAP,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
-            ft.TextField(
-                label="Hardness reading",
-                value=typed,
-                hint_text="type a number, tap its unit below",
-                keyboard_type=ft.KeyboardType.PHONE,
+            Box(
+                "Hardness reading",
+                typed,
+                lambda text: change(text, unit),
+                number=True,
                 error=message,
-                error_max_lines=6,
-                on_change=lambda event: change(event.control.value, unit),
+                size=theme.LEAD * display.text_scale,
+                weight=ft.FontWeight.W_600,
+                hint="type a number, tap its unit below",
             ),
             *[ft.Row(spacing=theme.GAP, controls=tiles[at : at + 2]) for at in range(0, len(tiles), 2)],
         ],
@@ -45,13 +48,14 @@ def Converter(display: Display, typed: str, unit: str, change) -> ft.Control:
 def Tile(name: str, chosen: str, value: float | None, display: Display, choose) -> ft.Control:
     """One unit with the reading in it; the one the number was read in is marked."""
     is_chosen = name == chosen
+    unit = unit_shown(name)
     shown = "–" if value is None else format_number(convert(value, chosen, name), unit=name, decimal=display.decimal)
     return ft.Semantics(
         container=True,
         button=True,
         selected=is_chosen,
         exclude_semantics=True,
-        label=f"{shown} {name}" + (", as read" if is_chosen else ""),
+        label=f"{shown} {unit}" + (", as read" if is_chosen else ""),
         on_tap=lambda event: choose(),
         expand=True,
         content=ft.Container(
@@ -66,7 +70,7 @@ def Tile(name: str, chosen: str, value: float | None, display: Display, choose) 
                 controls=[
                     ft.Text(shown, theme_style=ft.TextThemeStyle.TITLE_LARGE),
                     ft.Text(
-                        f"{name} · as read" if is_chosen else name,
+                        f"{unit} · as read" if is_chosen else unit,
                         theme_style=ft.TextThemeStyle.BODY_SMALL,
                         color=ft.Colors.ON_SURFACE_VARIANT,
                     ),

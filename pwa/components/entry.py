@@ -10,8 +10,9 @@ import flet as ft
 from core.job.answers import Amount
 from core.job.fields import FIELDS, Field
 from pwa import theme
+from pwa.components.box import Box
 from pwa.components.guard import guarded
-from pwa.state.display import Display
+from pwa.state.display import Display, unit_shown
 from pwa.state.sheet import ChoiceState, FieldState, Sheet
 
 
@@ -36,7 +37,6 @@ PROVENANCE = {
 def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
     """A field with its unit and its provenance; what is wrong stands under it."""
     field = FIELDS[state.key]
-    error = state.refused or (state.remark if state.level == "error" else "") or None
     return ft.Column(
         spacing=4,
         controls=[
@@ -44,19 +44,8 @@ def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
                 spacing=theme.GAP,
                 vertical_alignment=ft.CrossAxisAlignment.START,
                 controls=[
-                    ft.TextField(
-                        label=field.label,
-                        value=state.typed,
-                        expand=True,
-                        keyboard_type=ft.KeyboardType.PHONE,
-                        autocorrect=False,
-                        enable_suggestions=False,
-                        error=error,
-                        error_max_lines=6,
-                        text_style=ft.TextStyle(size=theme.TITLE * display.text_scale),
-                        on_change=lambda event: sheet.type(state.key, event.control.value),
-                    ),
-                    _unit(field, state, sheet),
+                    _box(field, state, sheet, display),
+                    *_unit(field, state, sheet),
                 ],
             ),
             _below(field, state, sheet, display),
@@ -64,19 +53,33 @@ def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
     )
 
 
-def _unit(field: Field, state: FieldState, sheet: Sheet) -> ft.Control:
-    if not field.units:
-        return ft.Container(width=0)
-    if len(field.units) == 1:
-        return ft.Container(height=56, alignment=ft.Alignment.CENTER, content=ft.Text(state.unit))
-    return Menu(
-        tooltip=f"Unit of {field.label}",
-        shown=state.unit,
-        options=[(unit, unit) for unit in field.units],
-        chosen=state.unit,
-        choose=lambda unit: sheet.set_unit(state.key, unit),
-        height=56,
+def _box(field: Field, state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
+    return Box(
+        field.label,
+        state.typed,
+        lambda text: sheet.type(state.key, text),
+        number=True,
+        error=state.refused or (state.remark if state.level == "error" else ""),
+        size=theme.TITLE * display.text_scale,
+        expand=True,
     )
+
+
+def _unit(field: Field, state: FieldState, sheet: Sheet) -> list[ft.Control]:
+    if not field.units:
+        return []
+    if len(field.units) == 1:
+        return [ft.Container(height=56, alignment=ft.Alignment.CENTER, content=ft.Text(unit_shown(state.unit)))]
+    return [
+        Menu(
+            tooltip=f"Unit of {field.label}",
+            shown=unit_shown(state.unit),
+            options=[(unit, unit_shown(unit)) for unit in field.units],
+            chosen=state.unit,
+            choose=lambda unit: sheet.set_unit(state.key, unit),
+            height=56,
+        )
+    ]
 
 
 def Menu(
@@ -92,7 +95,7 @@ def Menu(
     """A button that opens a list to pick from."""
     content: list[ft.Control] = [ft.Icon(icon, size=18, color=ft.Colors.ON_SURFACE_VARIANT)] if icon else []
     content += [ft.Text(shown), ft.Icon(ft.Icons.ARROW_DROP_DOWN, color=ft.Colors.ON_SURFACE_VARIANT)]
-    return ft.PopupMenuButton(
+    button = ft.PopupMenuButton(
         tooltip=tooltip,
         padding=0,
         content=ft.Container(
@@ -107,6 +110,7 @@ def Menu(
             for value, words in options
         ],
     )
+    return ft.Semantics(container=True, content=button)
 
 
 def _below(field: Field, state: FieldState, sheet: Sheet, display: Display) -> ft.Control:

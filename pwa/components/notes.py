@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import flet as ft
 
 from core.job.answers import Answer, Assumption, Part
@@ -16,10 +18,10 @@ from pwa.state.sheet import PartState
 
 
 @guarded
-def Answers(state: PartState, display: Display) -> ft.Control:
+def Answers(state: PartState, shown: Callable[[], Display]) -> ft.Control:
     """All answers of a section, each opening to its working; then assumptions and cautions."""
     opened, set_opened = ft.use_state("")
-    part = state.part
+    part, display = state.part, shown()
     answer = part.answers.get(opened) if part and opened else None
     ft.use_dialog(_working_sheet(answer, display, lambda: set_opened("")) if answer else None)
     if part is None:

@@ -6,6 +6,7 @@ import flet as ft
 
 from pwa import theme
 from pwa.components.banner import Banners
+from pwa.components.box import Box
 from pwa.components.converter import Converter
 from pwa.components.guard import guarded
 from pwa.components.job_row import JobCard
@@ -33,14 +34,20 @@ def JobsView(workspace: Workspace) -> ft.View:
         controls=[
             ft.SafeArea(
                 expand=True,
-                content=ft.ListView(
-                    expand=True,
-                    padding=theme.PAD,
-                    spacing=theme.PAD,
+                content=ft.Column(
+                    spacing=0,
+                    horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
                     controls=[
                         Banners(workspace.standing, workspace),
-                        HardnessCard(workspace.preferences, workspace),
-                        Jobs(workspace.jobs, workspace),
+                        ft.ListView(
+                            expand=True,
+                            padding=theme.PAD,
+                            spacing=theme.PAD,
+                            controls=[
+                                HardnessCard(workspace.preferences, workspace),
+                                Jobs(workspace.jobs, workspace),
+                            ],
+                        ),
                     ],
                 ),
             )
@@ -86,11 +93,8 @@ def Jobs(jobs: JobList, workspace: Workspace) -> ft.Control:
         ft.FilledButton("New job", icon=ft.Icons.ADD, height=theme.TOUCH + 8, on_click=begin),
     ]
     if jobs.search or jobs.total >= SEARCH_FROM:
-
-        async def search(event: ft.ControlEvent) -> None:
-            await workspace.list_again(event.control.value)
-
-        controls.append(ft.TextField(label="Search", value=jobs.search, on_change=search))
+        page = ft.context.page
+        controls.append(Box("Search", jobs.search, lambda text: page.run_task(workspace.list_again, text)))
     controls += [JobCard(row, workspace, key=row.id) for row in jobs.rows]
     if len(jobs.rows) < jobs.total:
         controls.append(ft.TextButton(f"Show more of {jobs.total}", on_click=workspace.more))

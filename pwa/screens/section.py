@@ -19,13 +19,16 @@ from pwa.state.workspace import Preferences, Workspace
 def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: Preferences) -> ft.Control:
     """Strip, entries, answers."""
     display = workspace.display(sheet)
-    title = SECTIONS[section]
+
+    def shown() -> Display:
+        return workspace.display(sheet)
+
     return ft.Column(
         expand=True,
         spacing=0,
         horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
-            AnswerStrip(sheet.parts[section], title, display),
+            AnswerStrip(sheet.parts[section], SECTIONS[section], shown),
             ft.ListView(
                 expand=True,
                 padding=theme.PAD,
@@ -33,10 +36,10 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                 controls=[
                     *_entries(sheet, section, display, often=True),
                     More(sheet, section, display),
-                    Answers(sheet.parts[section], display),
-                    NextButton(sheet.job.id, section),
+                    Answers(sheet.parts[section], shown),
                 ],
             ),
+            NextBar(sheet.job.id, section),
         ],
     )
 
@@ -72,13 +75,24 @@ def _any_entered(sheet: Sheet, section: str) -> bool:
     return any(sheet.fields[f.key].typed for f in FIELDS.values() if f.section == section and not f.often)
 
 
-def NextButton(job_id: str, section: str) -> ft.Control:
-    """On to the next section, or back to the sheet after the last."""
+def NextBar(job_id: str, section: str) -> ft.Control:
+    """On to the next section, or back to the sheet after the last; always within the thumb's reach."""
     order = list(SECTIONS)
-    at = order.index(section) + 1
-    label, route = (
-        (f"Next: {SECTIONS[order[at]]}", f"/job/{job_id}/{order[at]}")
-        if at < len(order)
-        else ("Back to the sheet", f"/job/{job_id}")
+    following = order[order.index(section) + 1 :][:1]
+    label = f"Next: {SECTIONS[following[0]]}" if following else "Back to the sheet"
+    route = "/".join([f"/job/{job_id}", *following])
+    return ft.Container(
+        padding=ft.Padding.symmetric(horizontal=theme.PAD, vertical=theme.GAP),
+        border=ft.Border.only(top=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
+        bgcolor=ft.Colors.SURFACE,
+        content=ft.Row(
+            controls=[
+                ft.FilledTonalButton(
+                    label,
+                    expand=True,
+                    height=theme.TOUCH,
+                    on_click=lambda event: ft.context.page.navigate(route),
+                )
+            ]
+        ),
     )
-    return ft.FilledTonalButton(label, height=theme.TOUCH + 8, on_click=lambda event: ft.context.page.navigate(route))

@@ -2,13 +2,17 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import flet as ft
 
 from core.job.fields import SECTIONS
 from pwa import theme
 from pwa.components.answer import AnswerBlock
 from pwa.components.banner import Banners
+from pwa.components.box import Box
 from pwa.components.guard import guarded
+from pwa.state.display import Display
 from pwa.state.sheet import Heading, PartState, Sheet
 from pwa.state.workspace import Preferences, Workspace
 
@@ -16,18 +20,22 @@ from pwa.state.workspace import Preferences, Workspace
 @guarded
 def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chosen: str = "") -> ft.Control:
     """Name, place, and the cards."""
-    display = workspace.display(sheet)
-    return ft.ListView(
+    cards = [
+        SectionCard(sheet.parts[key], title, sheet.job.id, lambda: workspace.display(sheet), chosen == key, key=key)
+        for key, title in SECTIONS.items()
+    ]
+    return ft.Column(
         expand=True,
-        padding=theme.PAD,
-        spacing=theme.PAD,
+        spacing=0,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
             Banners(workspace.standing, workspace),
-            HeadingFields(sheet.heading, sheet),
-            *[
-                SectionCard(sheet.parts[key], title, sheet.job.id, display, chosen == key, key=key)
-                for key, title in SECTIONS.items()
-            ],
+            ft.ListView(
+                expand=True,
+                padding=theme.PAD,
+                spacing=theme.PAD,
+                controls=[HeadingFields(sheet.heading, sheet), *cards],
+            ),
         ],
     )
 
@@ -37,24 +45,23 @@ def HeadingFields(heading: Heading, sheet: Sheet) -> ft.Control:
     """What the job is called and where it is."""
     return ft.Column(
         spacing=theme.GAP,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
-            ft.TextField(
-                label="Name of the job", value=heading.name, on_change=lambda e: sheet.rename(name=e.control.value)
-            ),
-            ft.TextField(label="Place", value=heading.place, on_change=lambda e: sheet.rename(place=e.control.value)),
+            Box("Name of the job", heading.name, lambda text: sheet.rename(name=text)),
+            Box("Place", heading.place, lambda text: sheet.rename(place=text)),
         ],
     )
 
 
 @guarded
-def SectionCard(state: PartState, title: str, job_id: str, display, chosen: bool) -> ft.Control:
+def SectionCard(state: PartState, title: str, job_id: str, shown: Callable[[], Display], chosen: bool) -> ft.Control:
     """One section: its answer in words and one figure; a tap opens it."""
 
     def open_(event: ft.ControlEvent) -> None:
         ft.context.page.navigate(f"/job/{job_id}/{state.key}")
 
     part = state.part
-    body = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display)
+    body = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, shown())
     return ft.Container(
         ink=True,
         on_click=open_,

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
@@ -57,7 +58,25 @@ UNIT_SETS: dict[str, dict[str, str]] = {
         "share": "%",
     },
 }
-UNIT_SET_NAMES = {"metric": "Metric", "us": "US"}
+UNIT_SET_NAMES = {"auto": "By the hardness unit", "metric": "Metric", "us": "US"}
+
+
+def unit_set_for(chosen: str, hardness_unit: str = "") -> str:
+    """The unit set that a choice means: "auto" is US where the hardness was read in grains per gallon."""
+    if chosen in UNIT_SETS:
+        return chosen
+    return "us" if hardness_unit == "gpg" else "metric"
+
+
+_SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
+_FORMULA = re.compile(r"(?<=[A-Za-z)])\d+")
+
+
+def unit_shown(symbol: str) -> str:
+    """A unit as the trade writes it: the figures of a chemical formula below the line."""
+    if "_S4.3" in symbol or not _FORMULA.search(symbol):
+        return symbol
+    return _FORMULA.sub(lambda digits: digits[0].translate(_SUBSCRIPTS), symbol)
 
 
 @dataclass(frozen=True, slots=True)
@@ -79,7 +98,7 @@ class Display:
     def figure(self, amount: Amount) -> tuple[str, str]:
         """The number and the unit of an amount, as texts."""
         value, unit = self._turned(amount)
-        return format_number(value, unit=unit or None, decimal=self.decimal), unit
+        return format_number(value, unit=unit or None, decimal=self.decimal), unit_shown(unit)
 
     def show(self, amount: Amount) -> str:
         """An amount in words: its number, and its unit where it has one."""
@@ -88,8 +107,9 @@ class Display:
             return format_number(value, decimal=self.decimal)
         if unit == "day":
             number = format_number(value, unit=unit, decimal=self.decimal)
+            number = number.removesuffix(f"{self.decimal}0")
             return f"{number} {'day' if number == '1' else 'days'}"
-        return format_quantity(value, unit, self.decimal)
+        return unit_shown(format_quantity(value, unit, self.decimal))
 
     def say(self, phrase: Phrase) -> str:
         """A phrase with its amounts in this user's units."""

@@ -10,7 +10,7 @@ from dataclasses import asdict, dataclass, fields
 class Settings:
     """How the app looks and speaks to this user."""
 
-    unit_set: str = "metric"
+    unit_set: str = "auto"  # a key of display.UNIT_SETS, or "auto": by the unit the hardness was read in
     decimal: str = "."
     ground: str = "system"  # system | light | dark
     contrast: bool = False

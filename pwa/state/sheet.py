@@ -1,7 +1,8 @@
 """One open job: what was typed, what it means, what the assessment says of it.
 
-The sheet is the only writer of its job, and calls `changed` with the section after each change. Each field and each part of the assessment is an observable of its own, so
-that a key press redraws one field and one strip. Numbers exist only in the job; the fields hold what was typed.
+The sheet is the only writer of its job, and calls `changed` with the section after each change. Each field and each
+part of the assessment is an observable of its own, so that a key press redraws one field and one strip. Numbers exist
+only in the job; the fields hold what was typed.
 """
 
 from __future__ import annotations
@@ -88,6 +89,12 @@ class Sheet:
         }
         self.parts = {key: PartState(key) for key in SECTIONS}
 
+    @property
+    def hardness_unit(self) -> str:
+        """The unit the hardness was read in; "" where none was entered."""
+        entry = self.job.entries.get("water.hardness")
+        return entry.unit if entry is not None else ""
+
     def type(self, key: str, typed: str) -> None:
         """Take in what stands in a field now."""
         state = self.fields[key]
@@ -157,7 +164,7 @@ class Sheet:
 
 def _field_state(field: Field, entry: Entry | None, units: Mapping[str, str]) -> FieldState:
     if entry is None:
-        return FieldState(field.key, unit=_usual_unit(field, units))
+        return FieldState(field.key, unit=_usual_unit(field, units), source=field.usual_source)
     typed = entry.typed or ("" if entry.value is None else f"{entry.value:g}")
     return FieldState(field.key, typed, entry.unit, entry.source)
 

@@ -22,7 +22,7 @@ from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
 from pwa.services.host import Host
 from pwa.services.storage import JobRow, Storage, StorageError
-from pwa.state.display import UNIT_SETS, Display
+from pwa.state.display import UNIT_SETS, Display, unit_set_for
 from pwa.state.settings import Settings
 from pwa.state.sheet import Sheet
 from pwa.theme import SCALES, WIDE
@@ -192,7 +192,9 @@ class Workspace:
         return self.sheets[job_id]
 
     def _open_sheet(self, job: Job) -> Sheet:
-        sheet = Sheet(job, self._changed, UNIT_SETS[self.preferences.settings.unit_set])
+        hardness = job.entries.get("water.hardness")
+        chosen = unit_set_for(self.preferences.settings.unit_set, hardness.unit if hardness else "")
+        sheet = Sheet(job, self._changed, UNIT_SETS[chosen])
         self._assess_sheet(sheet, SECTIONS)
         return sheet
 
@@ -237,11 +239,9 @@ class Workspace:
     def display(self, sheet: Sheet | None = None) -> Display:
         """How answers are shown: the user's units, hardness in the unit that was typed in this job."""
         settings = self.preferences.settings
-        own = {}
-        if sheet is not None:
-            unit = sheet.fields["water.hardness"].unit
-            own = {"hardness": unit} if sheet.fields["water.hardness"].typed else {}
-        return Display(settings.unit_set, settings.decimal, SCALES[settings.text], own)
+        unit = sheet.hardness_unit if sheet is not None else ""
+        own = {"hardness": unit} if unit else {}
+        return Display(unit_set_for(settings.unit_set, unit), settings.decimal, SCALES[settings.text], own)
 
     async def _add(self, job: Job) -> str:
         sheet = self._open_sheet(job)

@@ -34,7 +34,9 @@ MIGRATIONS: tuple[tuple[str, ...], ...] = (
         "create table setting (name text primary key, value text not null) without rowid",
     ),
 )
-CORRUPT, NOT_A_DATABASE = 11, 26  # SQLite's result codes for a damaged file
+# SQLite's result codes for trouble with the machine, not with what is in the file: no permission, busy, locked, out of
+# memory, read-only, interrupted, input or output, full, cannot open.
+NOT_DAMAGE = frozenset({3, 5, 6, 7, 8, 9, 10, 13, 14})
 COLUMNS = "id, document, name, place, summary, words, changed, deleted"
 
 
@@ -47,6 +49,7 @@ class JobDatabase:
 
     def __init__(self, connection: sqlite3.Connection) -> None:
         connection.isolation_level = None  # transactions are begun and ended below, in one place
+        connection.text_factory = _decoded
         self.connection = connection
 
     def prepare(self, migrations: Sequence[Sequence[str]] = MIGRATIONS) -> bool:
@@ -55,12 +58,14 @@ class JobDatabase:
         DamagedDatabaseError where it is not sound, NewerDataError where a later version of the app wrote it.
         """
         with damage_noticed():
-            found = self._one("pragma quick_check(1)")
+            found = self._one("pragma integrity_check(1)")
             if found != "ok":
                 raise DamagedDatabaseError(str(found))
-            version = int(self._one("pragma user_version"))
+            version = int(str(self._one("pragma user_version")))
             if version > len(migrations):
                 raise NewerDataError(version, len(migrations))
+            if version < 0:
+                raise DamagedDatabaseError(f"version {version}")
             for step in range(version, len(migrations)):
                 self._migrate(migrations[step], step + 1)
             self._look_at_tables()
@@ -73,11 +78,9 @@ class JobDatabase:
             self.connection.execute(f"pragma user_version = {version:d}")
 
     def _look_at_tables(self) -> None:
-        try:
-            self.connection.execute(f"select {COLUMNS}, search from job limit 1").fetchone()
-            self.connection.execute("select name, value from setting limit 1").fetchone()
-        except sqlite3.OperationalError as error:  # a sound SQLite file without our tables
-            raise DamagedDatabaseError(str(error)) from None
+        # A sound SQLite file without our tables is not ours any more.
+        self.connection.execute(f"select {COLUMNS}, search from job limit 1").fetchone()
+        self.connection.execute("select name, value from setting limit 1").fetchone()
 
     @contextmanager
     def _transaction(self) -> Iterator[None]:
@@ -110,9 +113,7 @@ class JobDatabase:
         elif isinstance(change, DropJob):
             self.connection.execute("delete from job where id = ?", (change.id,))
         elif isinstance(change, PutSetting):
-            self.connection.execute(
-                "insert or replace into setting values (?, ?)", (change.name, change.value)
-            )
+            self.connection.execute("insert or replace into setting values (?, ?)", (change.name, change.value))
 
     def list_jobs(self, search: str, limit: int, offset: int) -> list[JobRow]:
         """The jobs in which every word of the search occurs, the last changed first; no deleted ones."""
@@ -122,17 +123,17 @@ class JobDatabase:
             " order by changed desc, id limit ? offset ?",
             (*words, limit, offset),
         )
-        return [JobRow(*row) for row in rows]
+        return [JobRow(*map(_text, row)) for row in rows]
 
     def count_jobs(self, search: str) -> int:
         """How many jobs `list_jobs` would give in all."""
         where, words = _condition(search)
-        return int(self._one(f"select count(*) from job where {where}", words))
+        return int(str(self._one(f"select count(*) from job where {where}", words)))
 
     def find(self, job_id: str) -> StoredJob | None:
         """A job, deleted or not; None where there is none."""
         row = self.connection.execute(f"select {COLUMNS} from job where id = ?", (job_id,)).fetchone()
-        return StoredJob(*row) if row else None
+        return StoredJob(*map(_text, row)) if row else None
 
     def load(self, job_id: str) -> StoredJob:
         """A job that is not deleted; UnknownJobError where there is none."""
@@ -144,12 +145,12 @@ class JobDatabase:
     def job_ids(self) -> list[str]:
         """The ids of all jobs that are not deleted, the last changed first."""
         rows = self.connection.execute("select id from job where deleted = '' order by changed desc, id")
-        return [row[0] for row in rows]
+        return [_text(row[0]) for row in rows]
 
     def deleted_before(self, moment: str) -> list[str]:
         """The ids of the jobs that were deleted before a moment."""
         rows = self.connection.execute("select id from job where deleted <> '' and deleted < ?", (moment,))
-        return [row[0] for row in rows]
+        return [_text(row[0]) for row in rows]
 
     def setting(self, name: str) -> str | None:
         """A setting as JSON text; None where it was never set."""
@@ -158,7 +159,8 @@ class JobDatabase:
 
     def settings(self) -> dict[str, str]:
         """All settings, in the order of their names."""
-        return dict(self.connection.execute("select name, value from setting order by name"))
+        rows = self.connection.execute("select name, value from setting order by name")
+        return {_text(name): _text(value) for name, value in rows}
 
     def image(self) -> bytes:
         """The whole database as the bytes of a SQLite file."""
@@ -169,15 +171,25 @@ class JobDatabase:
         self.connection.close()
 
 
+def _decoded(stored: bytes) -> str:
+    # A damaged letter must not make the whole list unreadable.
+    return stored.decode("utf-8", "replace")
+
+
+def _text(value: object) -> str:
+    # Damage can turn a text into another kind of value.
+    return value if isinstance(value, str) else "" if value is None else str(value)
+
+
 @contextmanager
 def damage_noticed() -> Iterator[None]:
-    """Turn what SQLite says of a damaged file into DamagedDatabaseError; other trouble stays what it is."""
+    """Turn what SQLite says of a file on opening it into DamagedDatabaseError, unless it is about the machine."""
     try:
         yield
     except sqlite3.DatabaseError as error:
-        if getattr(error, "sqlite_errorcode", 0) & 0xFF in (CORRUPT, NOT_A_DATABASE):
-            raise DamagedDatabaseError(str(error)) from error
-        raise
+        if error.sqlite_errorcode & 0xFF in NOT_DAMAGE:
+            raise
+        raise DamagedDatabaseError(str(error)) from error
 
 
 def searched(job: StoredJob) -> str:
@@ -226,5 +238,5 @@ def _readable_rows(connection: sqlite3.Connection, query: str, kind: type) -> It
         for row in connection.execute(query):
             if all(isinstance(part, kind) for part in row):
                 yield row
-    except (sqlite3.Error, UnicodeError):
+    except sqlite3.Error:
         return

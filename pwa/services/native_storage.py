@@ -50,9 +50,7 @@ class FileKeeper:
         except BaseException:
             self.database.close()
             raise
-        self.database.connection.execute(
-            "pragma synchronous = full"
-        )  # a commit is on the disk when it returns
+        self.database.connection.execute("pragma synchronous = full")  # a commit is on the disk when it returns
 
     def _put_aside(self, changes: Sequence[Change]) -> str:
         # The fresh file takes the old one's place in one step, so that a crash leaves either of them, whole.

@@ -44,7 +44,8 @@ REFERENCES: dict[str, Reference] = {
         "checked",
     ),
     "CARRIER": Reference(
-        "Carrier, Handbook of Air Conditioning System Design, water conditioning: short form of the saturation pH, bands of the Ryznar index",
+        "Carrier, Handbook of Air Conditioning System Design, water conditioning: short form of the "
+        "saturation pH, bands of the Ryznar index",
         "secondary",
     ),
     "CH-CLASSES": Reference(
@@ -142,11 +143,13 @@ REFERENCES: dict[str, Reference] = {
         "from memory",
     ),
     "LIME-COURSE": Reference(
-        "Operator course cards and a textbook page on lime-soda softening: residuals of 30 mg/L Ca and 10 mg/L Mg as CaCO3",
+        "Operator course cards and a textbook page on lime-soda softening: residuals of 30 mg/L Ca and "
+        "10 mg/L Mg as CaCO3",
         "secondary",
     ),
     "NSF44": Reference(
-        "NSF/ANSI 44, residential cation exchange water softeners, section 7 as a US national- laboratory building guide quotes it, tests as trade-press columns describe them",
+        "NSF/ANSI 44, residential cation exchange water softeners, section 7 as a US national- "
+        "laboratory building guide quotes it, tests as trade-press columns describe them",
         "secondary",
     ),
     "NSPC-B54": Reference(
@@ -158,11 +161,13 @@ REFERENCES: dict[str, Reference] = {
         "secondary",
     ),
     "PA13": Reference(
-        "Parkhurst, D.L. and Appelo, C.A.J., 2013, USGS Techniques and Methods 6-A43: forms of the activity coefficients, Debye-Hückel slopes, activity of water",
+        "Parkhurst, D.L. and Appelo, C.A.J., 2013, USGS Techniques and Methods 6-A43: forms of the "
+        "activity coefficients, Debye-Hückel slopes, activity of water",
         "secondary",
     ),
     "PB82": Reference(
-        "Plummer, L.N. and Busenberg, E., 1982, Geochim. Cosmochim. Acta 46, 1011: solubilities of calcite, aragonite and vaterite, 0 to 90 °C",
+        "Plummer, L.N. and Busenberg, E., 1982, Geochim. Cosmochim. Acta 46, 1011: solubilities of "
+        "calcite, aragonite and vaterite, 0 to 90 °C",
         "secondary",
     ),
     "PUCKORIUS91": Reference(
@@ -194,7 +199,8 @@ REFERENCES: dict[str, Reference] = {
         "from memory",
     ),
     "TJ74": Reference(
-        "Truesdell, A.H. and Jones, B.F., 1974, J. Res. U.S. Geol. Survey 2, 233: ion sizes, extended Debye-Hückel form",
+        "Truesdell, A.H. and Jones, B.F., 1974, J. Res. U.S. Geol. Survey 2, 233: ion sizes, extended "
+        "Debye-Hückel form",
         "from memory",
     ),
     "TM5-813-1": Reference(
@@ -222,7 +228,8 @@ REFERENCES: dict[str, Reference] = {
         "checked",
     ),
     "UK-EFRA2018": Reference(
-        "House of Commons Environment, Food and Rural Affairs Committee, report on water, section on reducing demand (2018)",
+        "House of Commons Environment, Food and Rural Affairs Committee, report on water, section on "
+        "reducing demand (2018)",
         "checked",
     ),
     "UK-LEAFLETS": Reference(

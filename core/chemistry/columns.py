@@ -91,7 +91,7 @@ def columns(solution: Solution, data: str | None = None, *others: Value) -> Colu
         None if known["dic"] is None else MILLI * flat(known["dic"], shape),
         np.zeros(totals.shape[1], dtype=np.int8),
     )
-    _set_aside_unknown(made)
+    _set_aside_unknown(made, solution.why)
     return made
 
 
@@ -100,13 +100,14 @@ def flat(value: Value, shape: tuple[int, ...]) -> Floats:
     return np.broadcast_to(np.asarray(value, dtype=float), shape).reshape(-1)
 
 
-def _set_aside_unknown(made: Columns) -> None:
+def _set_aside_unknown(made: Columns, why: str | NDArray[np.object_]) -> None:
     """Mark waters with an unknown input, and put plain water in their place so that the loop stays quiet."""
     parts = [made.temp_c, made.sulfur, *(p for p in (made.ph, made.alkalinity, made.dic) if p is not None)]
     unknown = np.isnan(sum(parts) + made.totals.sum(axis=0))
     if not unknown.any():
         return
-    made.why[unknown] = UNKNOWN
+    told = np.broadcast_to(np.asarray(why, dtype=object), made.shape).reshape(-1)
+    made.why[unknown] = [REASONS.index(reason) if reason else UNKNOWN for reason in told[unknown]]
     made.totals[:, unknown] = 0.0
     for part, plain in (
         (made.temp_c, 25.0),
@@ -120,7 +121,7 @@ def _set_aside_unknown(made: Columns) -> None:
 
 
 def balance(cols: Columns) -> Floats:
-    """Totals of protons (relative to CO3-2 and H2O), carbon and sulfur from alkalinity and dissolved carbon. [mol/kg]"""
+    """Totals of protons (relative to CO3-2 and H2O), carbon and sulfur from alkalinity and carbon. [mol/kg]"""
     none = np.zeros_like(cols.temp_c)
     alkalinity, dic = (none if part is None else part for part in (cols.alkalinity, cols.dic))
     return np.array([2.0 * dic - alkalinity, np.maximum(dic, NOTHING), np.maximum(cols.sulfur, NOTHING)])
@@ -172,7 +173,7 @@ def _marked(cols: Columns, state: State) -> State:
     cols.why[lost] = LOST
     cols.why[no_carbon] = HYDROXIDE
     with np.errstate(invalid="ignore"):
-        cols.why[(cols.why != UNKNOWN) & (cols.why != HYDROXIDE) & (state.sums[C] > MOST_CARBON)] = CARBON
+        cols.why[(cols.why == OK) & (state.sums[C] > MOST_CARBON)] = CARBON
     return state
 
 
@@ -191,6 +192,22 @@ def find_open(cols: Columns, p_co2: Value) -> State:
     return state
 
 
+def conserved(solution: Solution, data: str) -> tuple[Value, Value, str | NDArray[np.object_]]:
+    """Alkalinity [meq/kg] and dissolved carbon [mmol/kg] of a water, whichever two it was told by; why they are not."""
+    if solution.alkalinity is not None and solution.dic is not None:
+        return solution.alkalinity, solution.dic, solution.why
+    cols = columns(solution, data)
+    settle(cols)
+    alkalinity, dic = (with_nan(cols, part / MILLI) for part in (cols.alkalinity, cols.dic) if part is not None)
+    return cols.out(alkalinity), cols.out(dic), cols.reasons()
+
+
+def resolved(solution: Solution) -> Solution:
+    """The same water holding pH as well, found closed to gas."""
+    cols = columns(solution)
+    return as_solution(cols, find(cols), solution)
+
+
 def with_nan(cols: Columns, flat_values: Floats) -> Floats:
     """Results with NaN where a water has no answer."""
     if not cols.why.any():
@@ -198,16 +215,18 @@ def with_nan(cols: Columns, flat_values: Floats) -> Floats:
     return np.where(cols.why == OK, flat_values, np.nan)
 
 
-def as_solution(cols: Columns, state: State, given: Solution, **changed: Floats) -> Solution:
-    """The water found, holding pH, alkalinity and dissolved carbon; `changed` are flat columns in mol/kg."""
-    values: dict[str, Any] = {"data": cols.data}
+def as_solution(
+    cols: Columns, state: State, given: Solution, *, temp_c: Value | None = None, **changed: Floats
+) -> Solution:
+    """The water found, holding pH, alkalinity and dissolved carbon; `changed` totals are flat columns in mol/kg."""
+    values: dict[str, Any] = {"data": cols.data, "why": cols.reasons()}
     for name in TOTALS:
         value = getattr(given, name)
         if name in changed:
             values[name] = cols.out(with_nan(cols, changed[name] / MILLI))
         else:
             values[name] = value
-    values["temp_c"] = cols.out(cols.temp_c)
+    values["temp_c"] = given.temp_c if temp_c is None else temp_c
     values["ph"] = cols.out(with_nan(cols, -state.x[H] / LN10))
     values["alkalinity"] = cols.out(with_nan(cols, (2.0 * state.sums[C] - state.sums[H]) / MILLI))
     values["dic"] = cols.out(with_nan(cols, state.sums[C] / MILLI))

@@ -20,6 +20,7 @@ Floats = NDArray[np.float64]
 LN10 = float(np.log(10.0))
 DAVIES = -1.0  # stands for an ion without a size
 ALWAYS = ("Ca", "Mg", "Na", "Cl")  # totals that get rows even where they are zero
+HELD = ("Ca", "Mg")  # ions that a solid may hold
 PARTNERS = ("F", "Cl")  # anions that pair with cations besides carbonate and sulfate
 
 # Rows of the sums taken over all species in one matrix product: protons, carbon, sulfur and ionic strength; their
@@ -54,9 +55,10 @@ class Model:
         z = 0.5 * self.charge**2  # so that its sum is the ionic strength
         slopes = [row * by for row in (h, c, s, z) for by in (h, c, s)]
         belongs = np.array([[s.of == of for s in self.species] for of in self.components], dtype=float)
-        alone = belongs[belongs.sum(axis=1) == 1.0].sum(axis=0)
+        several = belongs.sum(axis=1) > 1.0
+        self.paired = [i for i, of in enumerate(self.components) if several[i] or of in HELD]
+        alone = np.delete(belongs, self.paired, axis=0).sum(axis=0)  # their molality is their total, come what may
         self.moves_with_strength = (1.0 - alone)[:, None]
-        self.paired = [i for i, row in enumerate(belongs) if np.count_nonzero(row) > 1]
         by_ion = [row * belongs[i] for row in (h, c, s, z) for i in self.paired]
         self.sums = np.array([h, c, s, z, *slopes, np.ones_like(h), *by_ion])
         self.strength_sums = np.array([h, c, s, z, *(belongs[i] for i in self.paired)])

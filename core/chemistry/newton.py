@@ -29,14 +29,13 @@ def newton_step(problem: Problem, sums: Floats, strength_sums: Floats, totals: F
     slopes = np.empty((4, 4, strength.size))
     slopes[:, :3] = sums[SLOPES].reshape(4, 3, -1)
     slopes[:, 3] = strength_sums[:4]
-    rows = sums[SUMS:].reshape(4, len(paired), -1)
+    rows = sums[SUMS:].reshape(4, len(paired), strength.size)
     columns = rows.copy()
     columns[3] = strength_sums[4:]
     weight = 1.0 / np.maximum(totals[paired], SMALLEST)
     for contact in problem.contacts:
         _hold(problem, contact, miss, slopes, totals, rows, columns)
-        if contact.component in paired:
-            weight[paired.index(contact.component)] = 0.0
+        weight[paired.index(contact.component)] = 0.0
     slopes -= np.einsum("ipn,jpn->ijn", rows, columns * weight)
     if problem.activity:
         slopes[3, 3] -= 1.0
@@ -52,14 +51,8 @@ def _hold(
     """A cation held by a solid: its total is free, and moves with the activities the solid names."""
     component = contact.component
     total = totals[component]
-    paired = problem.model.paired
-    if component in paired:
-        place = paired.index(component)
-        row, column = rows[:, place], columns[:, place]
-    else:  # the free ion alone
-        row = column = np.zeros((4, total.size))
-        row[STRENGTH] = 0.5 * problem.model.ion_charge[component] ** 2 * total
-        column = np.zeros_like(row)
+    place = problem.model.paired.index(component)
+    row, column = rows[:, place], columns[:, place]
     for i, p in enumerate(contact.made):
         if p:
             miss[i] += p * (total - problem.totals[component])

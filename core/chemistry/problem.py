@@ -32,7 +32,7 @@ OPEN_TIED = Closure(((1, -2, -2),), ((1, -2, -2),))
 
 
 class Contact(NamedTuple):
-    """A solid that fixes the activity of a cation: ln activity = ln_k + made · (ln H+, ln CO3-2, ln SO4-2) + water ln a_w."""
+    """A solid that fixes a cation: ln activity = ln_k + made · (ln H+, ln CO3-2, ln SO4-2) + water · ln a_w."""
 
     component: int
     made: tuple[int, int, int]

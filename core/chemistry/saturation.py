@@ -1,4 +1,4 @@
-"""What a water throws out, or takes up, until it is in balance with a solid: true mass balance, closed or open to CO2."""
+"""What a water throws out, or takes up, until it is in balance with solids: by mass balance, closed or open to CO2."""
 
 from __future__ import annotations
 
@@ -26,7 +26,7 @@ from core.chemistry.model import S
 from core.chemistry.problem import CLOSED, CLOSED_TIED, OPEN, OPEN_TIED, Contact
 from core.chemistry.reactions import SOLIDS
 from core.chemistry.solution import Solution, Value
-from core.chemistry.speciation import Speciation, pressure
+from core.chemistry.speciation import NO_WATER, Speciation, pressure
 from core.chemistry.thermodynamics import check_data, evaluate
 from core.constants import MOLAR_MASS_CACO3
 from core.errors import InputError
@@ -107,7 +107,8 @@ def _named(solids: tuple[str, ...]) -> tuple[str, ...]:
     return named
 
 
-def _contact(cols: Columns, solid: str) -> Contact:
+def contact_with(cols: Columns, solid: str) -> Contact:
+    """A solid as the equilibrium loop takes it."""
     record = SOLIDS[cols.data][solid]
     h, c, s, water = record.made
     ln_k = LN10 * evaluate(record.log_k, cols.temp_c)
@@ -116,7 +117,7 @@ def _contact(cols: Columns, solid: str) -> Contact:
 
 def _in_contact(cols: Columns, solids: tuple[str, ...], open_to: Floats | None) -> tuple[State, dict[str, Floats]]:
     """Every solid named is there and in balance; what each gave or took."""
-    contacts = {solid: _contact(cols, solid) for solid in solids}
+    contacts = {solid: contact_with(cols, solid) for solid in solids}
     carbonate = next((s for s in solids if s in CARBONATES), None)
     ln_tie = None
     if "gypsum" in contacts and carbonate:
@@ -194,10 +195,7 @@ def _try_pattern(
 
 
 def _index(cols: Columns, state: State, solid: str) -> Floats:
-    return Speciation(cols, state, _NOBODY).flat_si(solid)
-
-
-_NOBODY = Solution(temp_c=25.0, alkalinity=0.0, dic=0.0)
+    return Speciation(cols, state, NO_WATER).flat_si(solid)
 
 
 def _result(cols: Columns, state: State, given: Solution, amounts: dict[str, Floats]) -> Saturated:
@@ -236,12 +234,12 @@ def precipitation_potential(solution: Solution, solid: str = "calcite", *, data:
     validity="closed to gas; 0 to 90 °C",
 )
 def dissolution_capacity(solution: Solution, solid: str = "calcite", *, data: str | None = None) -> Value:
-    """Calcium carbonate the water would dissolve, the precipitation potential with its sign turned [DIN38404-10]. [mg/kg CaCO3]"""
+    """Calcium carbonate the water would dissolve, minus the precipitation potential [DIN38404-10]. [mg/kg CaCO3]"""
     return -1.0 * precipitation_potential(solution, solid, data=data)
 
 
 def ph_at_saturation(solution: Solution, solid: str = "calcite", *, data: str | None = None) -> Value:
-    """PH of the water once it is in balance with a form of CaCO3 by dissolving or precipitating it, closed to gas. [-]"""
+    """The pH of the water once it has dissolved or precipitated CaCO3 to balance, closed to gas. [-]"""
     left = to_saturation(solution, _carbonate_only(solid), data=data).solution
     return left.ph  # type: ignore[return-value]
 

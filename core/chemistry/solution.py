@@ -34,6 +34,8 @@ IONS = {
 TOTALS = (*IONS, "so4")  # what mixes and dilutes besides alkalinity and dissolved carbon
 KNOWN = ("ph", "alkalinity", "dic")
 
+_NUMBERS = ("temp_c", *KNOWN, *TOTALS)
+
 HIGHEST = 10_000.0  # mmol/kg; more than any of these salts dissolves in the waters this is for
 LIMITS = {"temp_c": (0.0, 100.0, "°C"), "ph": (0.0, 14.0, ""), "alkalinity": (-HIGHEST, HIGHEST, "meq/kg")}
 
@@ -70,6 +72,7 @@ class Solution:
     f: Value = 0.0
     si: Value = 0.0
     data: str = "pb1982"
+    why: str | NDArray[np.object_] = ""  # of a result: why there is no answer, where there is none
 
     def __post_init__(self) -> None:
         check_data(self.data)
@@ -83,7 +86,7 @@ class Solution:
     def __eq__(self, other: object) -> bool:
         if not isinstance(other, Solution):
             return NotImplemented
-        pairs = ((getattr(self, f.name), getattr(other, f.name)) for f in fields(self))
+        pairs = ((getattr(self, f.name), getattr(other, f.name)) for f in fields(self) if f.name != "why")
         return all(a == b if isinstance(a, str) or a is None or b is None else _same(a, b) for a, b in pairs)
 
     @property
@@ -153,7 +156,7 @@ def _checked(name: str, value: ArrayLike) -> Value:
 
 
 def _shape(solution: Solution) -> tuple[int, ...]:
-    shapes = {v.shape for f in fields(solution) if isinstance(v := getattr(solution, f.name), np.ndarray)}
+    shapes = {v.shape for n in _NUMBERS if isinstance(v := getattr(solution, n), np.ndarray)}
     if not shapes:
         return ()
     try:

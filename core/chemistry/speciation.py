@@ -11,11 +11,14 @@ from numpy.typing import ArrayLike, NDArray
 from core.chemistry.columns import (
     LN10,
     MILLI,
+    OK,
+    UNKNOWN,
     Columns,
     as_solution,
     columns,
     find,
     find_open,
+    flat,
     ln_gas,
     settle,
     with_nan,
@@ -28,6 +31,9 @@ from core.chemistry.thermodynamics import FIT_RANGE, check_data, evaluate
 
 HIGHEST_STRENGTH = 0.5  # mol/kg; beyond it the activity coefficients are only indicative
 HIGHEST_PRESSURE = 10.0  # atm of CO2
+
+
+NO_WATER = Solution(temp_c=25.0, alkalinity=0.0, dic=0.0)  # for a state that no one asks the totals of
 
 
 class Speciation:
@@ -58,11 +64,11 @@ class Speciation:
     @property
     def temp_c(self) -> Value:
         """Temperature. [°C]"""
-        return self._cols.out(self._cols.temp_c)
+        return self._given.temp_c
 
     @cached_property
     def ph(self) -> Value:
-        """PH: minus log10 of the activity of H+. [-]"""
+        """The pH: minus log10 of the activity of H+. [-]"""
         return self._out(-self._state.x[H] / LN10)
 
     @cached_property
@@ -179,7 +185,7 @@ class Speciation:
             notes.append(f"The constants are fitted from {low:g} to {high:g} °C; beyond, they are carried on.")
         if np.any(self._state.strength > HIGHEST_STRENGTH):
             notes.append(
-                f"The ionic strength passes {HIGHEST_STRENGTH:g} mol/kg; the activity coefficients are only indicative there."
+                f"Ionic strength passes {HIGHEST_STRENGTH:g} mol/kg: activity coefficients are only indicative there."
             )
         return tuple(notes)
 
@@ -232,9 +238,11 @@ def at_temperature(solution: Solution, temp_c: ArrayLike, *, data: str | None = 
     temp = within("temp_c", number("temp_c", temp_c), 0.0, 100.0, "°C")
     cols = columns(solution, data and check_data(data), temp)
     settle(cols)
-    cols.temp_c = np.where(np.isnan(warm := np.broadcast_to(temp, cols.shape).reshape(-1)), 25.0, warm)
-    cols.why[np.isnan(warm)] = 1
-    return as_solution(cols, find(cols), solution)
+    warm = flat(temp, cols.shape)
+    unknown = np.isnan(warm)
+    cols.temp_c = np.where(unknown, cols.temp_c, warm)
+    cols.why[unknown & (cols.why == OK)] = UNKNOWN
+    return as_solution(cols, find(cols), solution, temp_c=temp)
 
 
 def pressure(p_co2: ArrayLike) -> Value:

@@ -1,13 +1,14 @@
 """Resin: what it can take up for a given dose of salt, by the trade's table, and how well that uses the salt.
 
-trade_table() -> CapacityTable  doses [g/L], capacities [eq/L], lowest printed, source and status
-capacity_table(salt_doses, capacities, name) -> CapacityTable        a supplier's own curve, checked
-trade_capacity(salt_dose [g/L], table=None) -> eq/L                  NaN outside the table
-why_no_capacity(salt_dose, table=None) -> str      "" where the table answers
+trade_table() -> CapacityTable                            doses [g/L], capacities [eq/L], sources
+capacity_table(salt_doses, capacities, name) -> CapacityTable       a supplier's own curve, checked
+trade_capacity(salt_dose [g/L], table=None) -> eq/L       NaN outside the table
+why_no_capacity(salt_dose, table=None) -> str             "" where the table answers
 salt_efficiency(capacity [eq/L], salt_dose [g/L]) -> mol/kg
 share_of_stoichiometric(efficiency [mol/kg], salt="NaCl") -> share
 potassium_chloride_dose(salt_dose [g/L]) -> g/L
-STOICHIOMETRIC_EFFICIENCY                          {"NaCl": 8.556, "KCl": 6.707} mol/kg
+practice_capacity(ceiling [eq/L], factor=0.75) -> eq/L    from the equilibrium model to what beds do
+STOICHIOMETRIC_EFFICIENCY                                 {"NaCl": 8.556, "KCl": 6.707} mol/kg
 """
 
 from __future__ import annotations
@@ -30,6 +31,8 @@ STOICHIOMETRIC_EFFICIENCY = {
     "NaCl": 500.0 / MOLAR_MASS_NACL,
     "KCl": 500.0 / MOLAR_MASS_KCL,
 }  # mol hardness / kg salt
+PRACTICE_FACTOR = 0.75  # trade table over the equilibrium model of `column_run`, middle for 80 to 320 g/L
+PRACTICE_RANGE = (0.67, 0.84)  # lowest and highest of that ratio, ten and twenty cells, a hard limestone water
 _ROUNDING = 0.002  # a dose rounded to the whole gram per litre still counts as the end of the table
 
 
@@ -73,24 +76,18 @@ def capacity_table(
     """
     doses, values = tuple(map(float, salt_doses)), tuple(map(float, capacities))
     if len(doses) != len(values) or len(doses) < 2:
-        raise InputError(
-            "capacity table", len(doses), "A capacity table needs at least two rows of dose and capacity."
-        )
+        raise InputError("capacity table", len(doses), "A capacity table needs at least two rows of dose and capacity.")
     if not all(isfinite(value) and value > 0.0 for value in doses + values):
         raise InputError("capacity table", doses, "Each row needs a salt dose and a capacity above zero.")
     if any(second <= first for first, second in pairwise(doses)):
         raise InputError("salt dose", doses, "The salt doses must rise from row to row.")
     if any(second < first for first, second in pairwise(values)):
-        raise InputError(
-            "capacity", values, "More salt cannot give less capacity; look at the row that falls."
-        )
+        raise InputError("capacity", values, "More salt cannot give less capacity; look at the row that falls.")
     if any(
         value / 2.0 > dose / 1000.0 * STOICHIOMETRIC_EFFICIENCY["NaCl"]
         for dose, value in zip(doses, values, strict=True)
     ):
-        raise InputError(
-            "capacity", values, "One row has more capacity than its salt can regenerate; check the units."
-        )
+        raise InputError("capacity", values, "One row has more capacity than its salt can regenerate; check the units.")
     return CapacityTable(name, doses, values, values, "entered by the user", ("entered",) * len(doses))
 
 
@@ -170,3 +167,19 @@ def share_of_stoichiometric(efficiency: Number, salt: str = "NaCl") -> Number:
 def potassium_chloride_dose(salt_dose: Number) -> Number:
     """Dose of potassium chloride that carries as many equivalents as a dose of common salt. [g/L]"""
     return salt_dose * (MOLAR_MASS_KCL / MOLAR_MASS_NACL)
+
+
+@formula(
+    "Capacity in practice",
+    "capacity = equilibrium ceiling × factor",
+    unit="eq/L",
+    takes={"ceiling": "eq/L", "factor": ""},
+    source="TRADE-SIZING",
+    validity="The factor is the trade's table divided by the equilibrium model: 0.67 to 0.84 for 80 to "
+    "320 g/L. It "
+    "stands for slow exchange at high flow, channelling, cold water, old resin and an early end of the run.",
+)
+@broadcasts
+def practice_capacity(ceiling: Number, factor: Number = PRACTICE_FACTOR) -> Number:
+    """Capacity to count on where a model at equilibrium gives the ceiling. [eq/L]"""
+    return ceiling * factor

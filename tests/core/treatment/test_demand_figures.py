@@ -67,9 +67,7 @@ def test_outside_the_curve_is_nan_with_a_reason():
     assert peak_flow.why_no_peak_flow(11.4) == ""
 
 
-@pytest.mark.parametrize(
-    "ask", [lambda: peak_flow.demand_curve("mine"), lambda: peak_flow.peak_flow_din(60, "barn")]
-)
+@pytest.mark.parametrize("ask", [lambda: peak_flow.demand_curve("mine"), lambda: peak_flow.peak_flow_din(60, "barn")])
 def test_unknown_code_or_building_is_refused_with_those_known(ask):
     """A word that is not in the list is refused, and the list is given."""
     with pytest.raises(InputError, match="accepted are"):
@@ -83,9 +81,7 @@ def test_unknown_fixture_is_refused():
     assert peak_flow.fixture_units({"bidet": [1, 2]}).tolist() == [2.0, 4.0]
 
 
-@given(
-    st.floats(1.0, 30_000.0), st.floats(1.0, 30_000.0), st.sampled_from(list(peak_flow.din_building_types()))
-)
+@given(st.floats(1.0, 30_000.0), st.floats(1.0, 30_000.0), st.sampled_from(list(peak_flow.din_building_types())))
 def test_din_peak_never_exceeds_the_sum_and_never_falls(one, other, building):
     """Not all taps run at once, so the peak is at most the sum; above the start of the range it rises with
     it.

@@ -12,8 +12,7 @@ import core.treatment
 from core.references import REFERENCES
 
 MODULES = [
-    importlib.import_module(f"core.treatment.{module.name}")
-    for module in pkgutil.iter_modules(core.treatment.__path__)
+    importlib.import_module(f"core.treatment.{module.name}") for module in pkgutil.iter_modules(core.treatment.__path__)
 ]
 FORMULAS = {
     f"{module.__name__.rpartition('.')[2]}.{name}": function

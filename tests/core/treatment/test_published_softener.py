@@ -62,10 +62,8 @@ def _efficiency_us(**inputs):
     load, capacity, usable, salt = _us(**inputs)
     per_lb = POUND / 1000 / GRAIN_MOL
     return {
-        "grains_per_lb": per_lb
-        * softener.effective_efficiency(softener.days_between(usable, load), load, salt),
-        "full_grains_per_lb": per_lb
-        * softener.effective_efficiency(softener.days_between(capacity, load), load, salt),
+        "grains_per_lb": per_lb * softener.effective_efficiency(softener.days_between(usable, load), load, salt),
+        "full_grains_per_lb": per_lb * softener.effective_efficiency(softener.days_between(capacity, load), load, salt),
     }
 
 
@@ -73,11 +71,7 @@ def _peak_us(gpm, ft3, inch):
     flow = gpm * US_GALLON
     return {
         "gpm_ft3": vessel.specific_flow(flow, ft3 * CUBIC_FOOT) * CUBIC_FOOT / US_GALLON / 60,
-        "gpm_ft2": vessel.surface_loading(flow, vessel.bed_area(inch * INCH))
-        * FOOT**2
-        * 1000
-        / 60
-        / US_GALLON,
+        "gpm_ft2": vessel.surface_loading(flow, vessel.bed_area(inch * INCH)) * FOOT**2 * 1000 / 60 / US_GALLON,
     }
 
 
@@ -93,9 +87,7 @@ def _water_us(ft2_gpm, inch, backwash_min, slow_gpm, slow_min, lb, grains):
 
 
 def _load_de(persons, litres, raw, blend, mol_per_kg, resin, salt):
-    load = softener.daily_load(
-        demand.daily_volume(persons, litres), raw * HARDNESS["°dH"], blend * HARDNESS["°dH"]
-    )
+    load = softener.daily_load(demand.daily_volume(persons, litres), raw * HARDNESS["°dH"], blend * HARDNESS["°dH"])
     days = softener.days_between(salt * mol_per_kg, load)
     return {
         "mol_day": load,
@@ -182,9 +174,7 @@ BLEND = {
     "sodium a day": lambda removed, unit, litres: {
         "mg": blending.daily_sodium(blending.sodium_added(removed * HARDNESS[unit]), litres)
     },
-    "final sodium": lambda sodium, removed, unit: {
-        "na": blending.sodium_after(sodium, removed * HARDNESS[unit])
-    },
+    "final sodium": lambda sodium, removed, unit: {"na": blending.sodium_after(sodium, removed * HARDNESS[unit])},
     "limits exceeded": _exceeded,
     "largest removal": lambda sodium, limit, unit: {
         "removed": blending.largest_removal(sodium, limit) / HARDNESS[unit]

@@ -122,11 +122,7 @@ def same_content(one: str, other: str) -> bool:
 
 def _content(document: str) -> Any:
     parsed = _parsed(document)
-    return (
-        {key: part for key, part in parsed.items() if key != "changed"}
-        if isinstance(parsed, dict)
-        else parsed
-    )
+    return {key: part for key, part in parsed.items() if key != "changed"} if isinstance(parsed, dict) else parsed
 
 
 def copy_id(job: StoredJob) -> str:

@@ -166,15 +166,11 @@ class BrowserKeeper:
         """Make all the changes; they are down when this returns, and none is made where it raises."""
         for _ in range(TRIES):
             try:
-                await (
-                    self._keep_beside(changes) if len(changes) < CHECKPOINT_AT else self._keep_whole(changes)
-                )
+                await (self._keep_beside(changes) if len(changes) < CHECKPOINT_AT else self._keep_whole(changes))
                 return
             except DiskChangedError as other:
                 await self._catch_up(other.found)
-        raise StorageError(
-            "Another window of the app keeps saving at the same moment. Close it, then try again."
-        )
+        raise StorageError("Another window of the app keeps saving at the same moment. Close it, then try again.")
 
     async def _keep_beside(self, changes: Sequence[Change]) -> None:
         lines = {change.key: as_line(change) for change in changes}

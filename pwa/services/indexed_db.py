@@ -19,9 +19,7 @@ from pwa.services.storage import NothingKeptError, SetAside, StorageError, Stora
 
 STORES = ("image", "changes", "meta", "aside")
 IMAGE, REVISION = "image", "revision"  # keys in the stores "image" and "meta"
-LAYOUT = (
-    1  # of the stores, not of what they hold; a change would lock out tabs that still run the app before it
-)
+LAYOUT = 1  # of the stores, not of what they hold; a change would lock out tabs that still run the app before it
 
 
 class IndexedDisk:
@@ -43,9 +41,7 @@ class IndexedDisk:
         opened = _Outcome()
         request.onupgradeneeded = opened.proxy(lambda event: _make_stores(event.target.result))
         request.onsuccess = opened.proxy(lambda event: opened.done(event.target.result))
-        request.onerror = opened.proxy(
-            lambda event: opened.fail(NothingKeptError(_name_of(event.target.error)))
-        )
+        request.onerror = opened.proxy(lambda event: opened.fail(NothingKeptError(_name_of(event.target.error))))
         self._connection = await opened
 
     async def _begin(self, stores: Iterable[str], mode: str) -> Any:
@@ -138,15 +134,12 @@ class IndexedDisk:
             },
         )
         return [
-            SetAside(str(name), int(file.length))
-            for name, file in zip(found["names"], found["files"], strict=True)
+            SetAside(str(name), int(file.length)) for name, file in zip(found["names"], found["files"], strict=True)
         ]
 
     async def read_set_aside(self, name: str) -> bytes:
         """One of them; KeyError where there is none of this name."""
-        found = await self._read(
-            ("aside",), lambda transaction: {"file": transaction.objectStore("aside").get(name)}
-        )
+        found = await self._read(("aside",), lambda transaction: {"file": transaction.objectStore("aside").get(name)})
         if not _given(found["file"]):
             raise KeyError(name)
         return found["file"].to_bytes()

@@ -6,9 +6,7 @@ import os
 import sys
 from pathlib import Path
 
-IN_BROWSER = (
-    sys.platform == "emscripten"
-)  # Python inside a web page; otherwise the development server or a test
+IN_BROWSER = sys.platform == "emscripten"  # Python inside a web page; otherwise the development server or a test
 
 
 def data_folder() -> Path:

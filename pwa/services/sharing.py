@@ -47,9 +47,7 @@ class FletClipboard:
         try:
             await self._clipboard().set(text)
         except Exception as error:  # whatever the platform says, the user gets a sentence
-            raise SharingError(
-                f"The text could not be copied ({error}). Mark it and copy it by hand."
-            ) from error
+            raise SharingError(f"The text could not be copied ({error}). Mark it and copy it by hand.") from error
 
     async def paste(self) -> str:
         """The text on it; empty where there is none."""

@@ -139,9 +139,7 @@ class SqliteStorage:
         """Keep a job, new or changed, and give the time noted for it; a deleted job stays deleted."""
         if not job_id:
             raise ValueError("A job needs an id to be saved.")
-        job = StoredJob(
-            clean(job_id), clean(document), clean(name), clean(place), clean(summary), clean(words)
-        )
+        job = StoredJob(clean(job_id), clean(document), clean(name), clean(place), clean(summary), clean(words))
         async with self._turn:
             here = self._find(job.id)
             if here and replace(job, changed=here.changed, deleted=here.deleted) == here:
@@ -173,7 +171,7 @@ class SqliteStorage:
     async def get_setting(self, key: str) -> str | None:
         """A setting as JSON text; None where it was never set."""
         with _said():
-            return self._database.setting(key)
+            return self._database.setting(clean(key))
 
     async def set_setting(self, key: str, value: str) -> None:
         """Keep a setting, as JSON text; ValueError where it is no JSON."""
@@ -207,9 +205,7 @@ class SqliteStorage:
             changes += [PutSetting(name, value) for name, value in new.items()]
             if changes:
                 await self._keep(changes)
-        return RestoreReport(
-            **fates, unreadable=found.unreadable, settings_added=len(new), settings_kept=kept
-        )
+        return RestoreReport(**fates, unreadable=found.unreadable, settings_added=len(new), settings_kept=kept)
 
     async def set_aside(self) -> list[SetAside]:
         """The damaged files that were kept."""
@@ -231,9 +227,7 @@ def _said() -> Iterator[None]:
     except sqlite3.Error as error:
         if getattr(error, "sqlite_errorcode", 0) & 0xFF == FULL:
             raise StorageFullError from error
-        raise StorageError(
-            f"The jobs on this device could not be read or written ({error}). Try again."
-        ) from error
+        raise StorageError(f"The jobs on this device could not be read or written ({error}). Try again.") from error
 
 
 def clean(text: str) -> str:

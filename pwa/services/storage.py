@@ -29,9 +29,7 @@ class UnknownJobError(StorageError):
     """There is no such job on this device, or it was deleted."""
 
     def __init__(self, job_id: str) -> None:
-        super().__init__(
-            "This job is not on this device. It may have been deleted, or it was made on another device."
-        )
+        super().__init__("This job is not on this device. It may have been deleted, or it was made on another device.")
         self.job_id = job_id
 
 

@@ -160,11 +160,12 @@ def test_known_texts_are_shared_inside_the_tap():
     """What is known beforehand is copied or shared by the client itself, as Safari wants it."""
 
     async def scenario():
-        FakePage()  # actions belong to a page
+        page = FakePage()  # actions belong to a page, which must live
         copy, share = copy_action("12 °dH"), share_action("12 °dH", "Mill")
         assert (copy.method, copy.args) == ("set", {"data": "12 °dH"})
         assert share.method == "share_text"
         assert {"text": "12 °dH", "subject": "Mill"}.items() <= share.args.items()
+        assert page.page.route == "/"
 
     run(scenario())
 

@@ -105,6 +105,7 @@ class BrowserKeeper:
         self._clock = clock
         self._revision: int | None = None
         self._beside: set[str] = set()  # keys of the changes beside the image
+        self._aside: Mapping[str, bytes] = {}  # damaged parts, to be kept aside when the image is next written
         self._checkpoint_at = CHECKPOINT_AT
         self._turn_come: asyncio.Task[None] | None = None
         self.database: JobDatabase
@@ -146,9 +147,10 @@ class BrowserKeeper:
         self.database = loaded.database
         self._revision = kept.revision
         self._beside = {line_key(line) for line in kept.lines}
+        self._aside = loaded.aside
         self.notes += [note for note in loaded.notes if note not in self.notes]
         if tidy and (loaded.outdated or loaded.aside or len(self._beside) >= TIDY_AT):
-            await self._checkpoint(loaded.aside)
+            await self._checkpoint()
 
     def _loaded(self, kept: Kept) -> _Loaded:
         name = damaged_name(self._clock.now())
@@ -178,29 +180,27 @@ class BrowserKeeper:
         self.database.apply(changes)
         self._beside |= lines.keys()
         if len(self._beside) >= self._checkpoint_at:
-            await self._checkpoint({})
+            await self._checkpoint()
 
     async def _keep_whole(self, changes: Sequence[Change]) -> None:
         before = self.database.image()
         self.database.apply(changes)
         try:
-            self._revision = await self._disk.replace(self.database.image(), self._revision, {})
+            await self._write_anew(self._revision)
         except BaseException:
             self.database = _connected(before)
             raise
-        self._written_anew()
 
-    async def _checkpoint(self, aside: Mapping[str, bytes]) -> None:
+    async def _checkpoint(self) -> None:
         """Write the image anew, if it can be done: the changes beside it are as safe, only slower to open."""
         try:
-            self._revision = await self._disk.replace(self.database.image(), self._revision, aside)
+            await self._write_anew(self._revision)
         except (StorageError, DiskChangedError):
             self._checkpoint_at = len(self._beside) + CHECKPOINT_AT
-        else:
-            self._written_anew()
 
-    def _written_anew(self) -> None:
-        self._beside = set()
+    async def _write_anew(self, revision: int | None) -> None:
+        self._revision = await self._disk.replace(self.database.image(), revision, self._aside)
+        self._beside, self._aside = set(), {}
         self._checkpoint_at = CHECKPOINT_AT
 
     async def _catch_up(self, found: int | None) -> None:
@@ -208,8 +208,7 @@ class BrowserKeeper:
             await self._read(tidy=False)
             return
         # The browser has cleared what it kept while the app was open: all that is in memory goes back.
-        self._revision = await self._disk.replace(self.database.image(), None, {})
-        self._written_anew()
+        await self._write_anew(None)
 
     async def close(self) -> None:
         """Let go of the lock, the disk and the memory."""

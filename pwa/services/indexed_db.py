@@ -47,12 +47,14 @@ class IndexedDisk:
     async def _begin(self, stores: Iterable[str], mode: str) -> Any:
         options = to_js({"durability": "strict"}, dict_converter=js.Object.fromEntries)
         for again in (True, False):
+            if self._connection is None:
+                await self.open()
             try:
                 return self._connection.transaction(to_js(list(stores)), mode, options)
             except JsException as error:  # some browsers drop the connection of a page that slept
+                self._connection = None
                 if not again:
                     raise _trouble(_name_of(error)) from None
-                await self.open()
 
     async def _read(self, stores: Iterable[str], ask: Callable[[Any], dict[str, Any]]) -> dict[str, Any]:
         """Ask several things in one transaction and give the answers by name."""
@@ -81,9 +83,11 @@ class IndexedDisk:
         try:
             meta.get(REVISION).onsuccess = handler
             await _ended(transaction)
-        except StorageError:
+        except StorageError as error:
             if others:
                 raise DiskChangedError(others[0]) from None
+            if not isinstance(error, StorageFullError):
+                self._connection = None  # the next call makes it anew
             raise
         finally:
             handler.destroy()

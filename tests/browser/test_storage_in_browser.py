@@ -139,7 +139,7 @@ def test_a_damaged_image_is_kept_aside(shared):
     found = shared.run("""
     for n in range(40):
         await storage.save(f"id{n}", json.dumps({"n": n, "fill": "f" * 3000}), f"Mill {n}")
-    await storage._keeper._checkpoint({})
+    await storage._keeper._checkpoint()
     await storage.save("since", "{}", "Since")
     disk = storage._keeper._disk
     kept = await disk.read()

@@ -147,7 +147,7 @@ def test_damage_to_the_image_never_stops_the_app(place, junk):
         tab = await opened(store)
         for number in range(8):
             await tab.save(f"id{number}", json.dumps({"n": number, "fill": "f" * 2000}), f"Mill {number}")
-        await tab.keeper._checkpoint({})
+        await tab.keeper._checkpoint()
         await tab.save("since", "{}", "Since")
         sound = store.image or b""
         at = place % len(sound)
@@ -288,6 +288,30 @@ def test_no_room_for_the_image_does_not_hold_up_saving():
         await tab.save("more", "1")
         assert (store.lines, tab.disk.replaced) == ({}, 1)
         assert len(await contents(await opened(store))) == 9
+
+    run(scenario())
+
+
+@pytest.mark.usefixtures("few")
+def test_a_damaged_image_waits_for_room_to_be_kept_aside():
+    """Where there is no room to keep a damaged image aside, it stays where it is until there is."""
+
+    async def scenario():
+        store = Store()
+        tab = await opened(store)
+        await tab.save("a", "1")
+        await tab.keeper._checkpoint()
+        store.image = broken = b"damaged" * 1000
+        tab = FakeTab(HandClock(), store)
+        tab.disk.room = store.size() + 1000
+        await tab.open()
+        await tab.save("b", "1")
+        assert (store.image, store.aside) == (broken, {})
+        tab.disk.room = None
+        for number in range(6):
+            await tab.save(f"id{number}", "1")
+        assert list(store.aside.values()) == [broken]
+        assert len(await contents(await opened(store))) == 7
 
     run(scenario())
 

@@ -39,10 +39,7 @@ REFERENCES: dict[str, Reference] = {
         "Bradley, D.J. and Pitzer, K.S., 1979, J. Phys. Chem. 83, 1599: dielectric constant of water",
         "secondary",
     ),
-    "CA-HSC116785": Reference(
-        "California Health and Safety Code § 116785, water softeners",
-        "checked",
-    ),
+    "CA-HSC116785": Reference("California Health and Safety Code § 116785, water softeners", "checked"),
     "CARRIER": Reference(
         "Carrier, Handbook of Air Conditioning System Design, water conditioning: short form of the "
         "saturation pH, bands of the Ryznar index",
@@ -76,14 +73,8 @@ REFERENCES: dict[str, Reference] = {
         "DIN 38402-62: plausibility of analyses by ion balance (A 62), 2014",
         "secondary",
     ),
-    "DIN38404-10": Reference(
-        "DIN 38404-10: Calcitsättigung eines Wassers (C 10), 2012",
-        "from memory",
-    ),
-    "DIN38409-6": Reference(
-        "DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L",
-        "from memory",
-    ),
+    "DIN38404-10": Reference("DIN 38404-10: Calcitsättigung eines Wassers (C 10), 2012", "from memory"),
+    "DIN38409-6": Reference("DIN 38409-6: Wasserhärte (H 6), 1986; 1 °dH = 0.1783 mmol/L", "from memory"),
     "DIN38409-7": Reference(
         "DIN 38409-7, acid and base capacity (H 7), with the correction for CO2 at the end point",
         "from memory",
@@ -100,12 +91,14 @@ REFERENCES: dict[str, Reference] = {
         "US EPA, National Primary and Secondary Drinking Water Regulations, 40 CFR 141 and 143",
         "from memory",
     ),
-    "EPA-SODIUM": Reference(
-        "US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006",
+    "EPA-SODIUM": Reference("US EPA, safe-water answer page on sodium, citing EPA 822-R-03-006", "checked"),
+    "EPA-SOFTENING": Reference(
+        "US EPA, EPA/600/R-98/044, and Sorg, Schock and Lytle, J. AWWA 91(8), 1999: softening and metals",
         "checked",
     ),
-    "EPA-SOFTENING": Reference(
-        "US EPA, EPA/600/R-98/044, and Sorg, Schock and Lytle, J. AWWA 91(8), 1999: softening and metals", "checked"
+    "ERGUN52": Reference(
+        "S. Ergun, Fluid flow through packed columns, Chem. Eng. Prog. 48 (1952) 89",
+        "from memory",
     ),
     "EU2020-2184": Reference(
         "Directive (EU) 2020/2184 on the quality of water intended for human consumption",
@@ -119,25 +112,41 @@ REFERENCES: dict[str, Reference] = {
         "G. L. Gaines, H. C. Thomas, Adsorption studies on clay minerals II, J. Chem. Phys. 21 (1953) 714",
         "from memory",
     ),
+    "GUM": Reference(
+        "JCGM 100:2008, Guide to the expression of uncertainty in measurement (GUM), sections 4.3 and 5.1", "from memory"
+    ),
     "HEATER-SITES": Reference(
-        "US engineering-society paper on residential water heaters at four sites, abstract", "checked"
+        "US engineering-society paper on residential water heaters at four sites, abstract",
+        "checked",
     ),
     "IPC2018-E": Reference(
         "International Plumbing Code 2018, appendix E, tables E103.3(2) and E103.3(3)",
         "secondary",
     ),
-    "ISO6059": Reference(
-        "ISO 6059:1984, sum of calcium and magnesium by EDTA titration",
+    "ISO5725-2": Reference(
+        "ISO 5725-2, repeatability and reproducibility of a measurement method; Grubbs' test and its critical values",
         "from memory",
     ),
+    "ISO6059": Reference("ISO 6059:1984, sum of calcium and magnesium by EDTA titration", "from memory"),
     "IUPAC21": Reference(
         "IUPAC CIAAW, Standard atomic weights 2021 (abridged or conventional values)",
         "checked",
+    ),
+    "KELL75": Reference(
+        "G. S. Kell, Density, thermal expansivity and compressibility of liquid water from 0 to 150 °C, "
+        "J. Chem. Eng. Data 20 (1975) 97",
+        "from memory",
     ),
     "KESTIN78": Reference(
         "Kestin, J., Sokolov, M. and Wakeham, W.A., 1978, J. Phys. Chem. Ref. Data 7, 941: viscosity of water",
         "from memory",
     ),
+    "KHAN-RICHARDSON89": Reference(
+        "A. R. Khan, J. F. Richardson, Fluid-particle interactions and flow characteristics of "
+        "fluidized beds, Chem. Eng. Commun. 78 (1989) 111",
+        "from memory",
+    ),
+    "KIT-MAKER": Reference("A test-kit maker's support note on accuracy at low hardness", "checked"),
     "LARSON58": Reference(
         "Larson, T.E. and Skold, R.V., 1958, Corrosion 14, 285: chloride and sulfate against alkalinity",
         "from memory",
@@ -152,10 +161,7 @@ REFERENCES: dict[str, Reference] = {
         "laboratory building guide quotes it, tests as trade-press columns describe them",
         "secondary",
     ),
-    "NSPC-B54": Reference(
-        "National Standard Plumbing Code, table B.5.4",
-        "checked",
-    ),
+    "NSPC-B54": Reference("National Standard Plumbing Code, table B.5.4", "checked"),
     "OPERATOR-TEXT": Reference(
         "Operator-training text on softener cycles and a copied chapter of an industrial water handbook",
         "secondary",
@@ -178,9 +184,17 @@ REFERENCES: dict[str, Reference] = {
         "Residential End Uses of Water, Version 2 (Water Research Foundation, 2016)",
         "from memory",
     ),
+    "RICHARDSON-ZAKI54": Reference(
+        "J. F. Richardson, W. N. Zaki, Sedimentation and fluidisation, Trans. Inst. Chem. Eng. 32 (1954) 35",
+        "from memory",
+    ),
     "SALT-INSTITUTE": Reference(
         "Salt producers' institute, table of sodium chloride solubility by temperature",
         "checked",
+    ),
+    "SCHILLER-NAUMANN33": Reference(
+        "L. Schiller, A. Naumann, drag of spheres, Z. VDI 77 (1933) 318",
+        "from memory",
     ),
     "SM1030E": Reference(
         "Standard Methods for the Examination of Water and Wastewater, 1030 E, checking correctness of analyses",
@@ -196,6 +210,10 @@ REFERENCES: dict[str, Reference] = {
     ),
     "SM2340B": Reference(
         "Standard Methods for the Examination of Water and Wastewater, 2340 B, hardness by calculation",
+        "from memory",
+    ),
+    "SM2340C": Reference(
+        "Standard Methods for the Examination of Water and Wastewater, 2340 C, hardness by EDTA titration",
         "from memory",
     ),
     "TJ74": Reference(
@@ -219,10 +237,7 @@ REFERENCES: dict[str, Reference] = {
         "Two independent trade pages on softener sizing: capacity by salt dose, iron rule, intervals",
         "secondary",
     ),
-    "TRINKWV2023": Reference(
-        "Trinkwasserverordnung of 20 June 2023",
-        "secondary",
-    ),
+    "TRINKWV2023": Reference("Trinkwasserverordnung of 20 June 2023", "secondary"),
     "UFC3-240": Reference(
         "US Department of Defense, UFC 3-240-13FN (25 May 2005), pages on softeners",
         "checked",
@@ -236,7 +251,10 @@ REFERENCES: dict[str, Reference] = {
         "Hardness leaflets of water companies in the south west and the north west of England",
         "checked",
     ),
-    "UPC2021-603": Reference("Uniform Plumbing Code 2021, section 603.4.4, as quoted by the code body", "checked"),
+    "UPC2021-603": Reference(
+        "Uniform Plumbing Code 2021, section 603.4.4, as quoted by the code body",
+        "checked",
+    ),
     "US-DISTRICT": Reference(
         "Softening best-practice list of a sewerage district in the US Midwest",
         "checked",
@@ -257,22 +275,13 @@ REFERENCES: dict[str, Reference] = {
         "USGS thermodynamic data file phreeqc.dat in its form of 2015, with the carbonate set of Plummer and Busenberg",
         "checked",
     ),
-    "USGS24": Reference(
-        "USGS thermodynamic data file phreeqc.dat of 22 May 2024",
-        "checked",
-    ),
+    "USGS24": Reference("USGS thermodynamic data file phreeqc.dat of 22 May 2024", "checked"),
     "VAC590-900": Reference(
         "Virginia Administrative Code 12VAC5-590-900, cation exchange softening",
         "checked",
     ),
-    "WATEQ4F": Reference(
-        "USGS thermodynamic data file wateq4f.dat (Ball and Nordstrom, 1991)",
-        "checked",
-    ),
-    "WHO-GDWQ": Reference(
-        "World Health Organization, Guidelines for Drinking-water Quality",
-        "from memory",
-    ),
+    "WATEQ4F": Reference("USGS thermodynamic data file wateq4f.dat (Ball and Nordstrom, 1991)", "checked"),
+    "WHO-GDWQ": Reference("World Health Organization, Guidelines for Drinking-water Quality", "from memory"),
     "WHO-HARDNESS": Reference(
         "World Health Organization 2011, Hardness in Drinking-water (background), as a page quotes it",
         "secondary",
@@ -281,12 +290,6 @@ REFERENCES: dict[str, Reference] = {
         "Wagner, W. and Pruss, A., 2002, J. Phys. Chem. Ref. Data 31, 387: density along the boiling line",
         "secondary",
     ),
-    "WRMG": Reference(
-        "Germany, Wasch- und Reinigungsmittelgesetz (WRMG) of 2007, § 9 (2)",
-        "checked",
-    ),
-    "WRMG-1987": Reference(
-        "Germany, the detergent act before 2007, four hardness ranges",
-        "from memory",
-    ),
+    "WRMG": Reference("Germany, Wasch- und Reinigungsmittelgesetz (WRMG) of 2007, § 9 (2)", "checked"),
+    "WRMG-1987": Reference("Germany, the detergent act before 2007, four hardness ranges", "from memory"),
 }

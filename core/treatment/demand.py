@@ -146,8 +146,7 @@ def average_persons(persons: Number, guests: Number = 0.0, guest_days: Number = 
     unit="",
     takes={"outdoor_share": "", "toilet_share": ""},
     source="definition",
-    validity="Shares of the whole use. Toilets take about a quarter of the indoor use in US homes "
-    "(secondary source).",
+    validity="Shares of the whole use. Toilets take about a quarter of the indoor use in US homes (secondary source).",
 )
 @broadcasts
 def softened_share(outdoor_share: Number = 0.0, toilet_share: Number = 0.0) -> Number:

@@ -124,8 +124,7 @@ def fixture_units(counts: Mapping[str, Number]) -> Number:
 
 @formula(
     "Fixture units of a home",
-    "WSFU = bathrooms × bath group + half baths × (basin + toilet) + kitchen sinks + dishwashers + "
-    "washing machines",
+    "WSFU = bathrooms × bath group + half baths × (basin + toilet) + kitchen sinks + dishwashers + washing machines",
     unit="WSFU",
     takes={
         "bathrooms": "",
@@ -136,8 +135,7 @@ def fixture_units(counts: Mapping[str, Number]) -> Number:
         "flushing": "",
     },
     source="IPC2018-E",
-    validity="Assumes one bath group a bathroom and one of each kitchen fixture; count the fixtures where "
-    "you can.",
+    validity="Assumes one bath group a bathroom and one of each kitchen fixture; count the fixtures where you can.",
 )
 @broadcasts
 def household_fixture_units(
@@ -272,8 +270,7 @@ def household_flow_sum(
     unit="L/min",
     takes={"flow_sum": "L/min", "building": "", "largest": "L/min"},
     source="DIN1988-300",
-    validity="ΣV from 0.2 to 500 L/s (12 to 30 000 L/min). Below that everything may run at once: the sum "
-    "itself.",
+    validity="ΣV from 0.2 to 500 L/s (12 to 30 000 L/min). Below that everything may run at once: the sum itself.",
 )
 @broadcasts
 def peak_flow_din(flow_sum: Number, building: str = "dwelling", largest: Number = 0.0) -> Number:

@@ -113,8 +113,7 @@ def diluted_brine(salt: Number, strength: Number = 0.10) -> Number:
     unit="L/min",
     takes={"area": "m²", "velocity": "m/h"},
     source="TRADE-BACKWASH",
-    validity="12.2 m/h (5 gpm/ft²) lifts usual resin by half its depth at 10 °C; colder water needs less, "
-    "warmer more.",
+    validity="12.2 m/h (5 gpm/ft²) lifts usual resin by half its depth at 10 °C; colder water needs less, warmer more.",
 )
 @broadcasts
 def backwash_flow(area: Number, velocity: Number = BACKWASH_VELOCITY) -> Number:

@@ -97,8 +97,7 @@ def capacity_table(
     unit="eq/L",
     takes={"salt_dose": "g/L"},
     source="TRADE-SIZING",
-    validity="64 to 320 g/L for the trade table, co-current; its sources differ by 10 to 15 %. Never "
-    "extrapolated.",
+    validity="64 to 320 g/L for the trade table, co-current; its sources differ by 10 to 15 %. Never extrapolated.",
 )
 @broadcasts
 def trade_capacity(salt_dose: Number, table: CapacityTable | None = None) -> Number:

@@ -154,8 +154,7 @@ def salt_per_regeneration(resin_volume: Number, salt_dose: Number) -> Number:
     unit="day",
     takes={"kind": ""},
     source="common practice, no source",
-    validity="One tank regenerates in the night after its reserve is touched; of two tanks one is always "
-    "ready.",
+    validity="One tank regenerates in the night after its reserve is touched; of two tanks one is always ready.",
 )
 def reserve_days(kind: str) -> float:
     """Days of average load that a softener of this kind ("single" or "twin") keeps in reserve. [day]"""
@@ -168,8 +167,7 @@ def reserve_days(kind: str) -> float:
     unit="mol",
     takes={"load": "mol/day", "days": "day"},
     source="common practice, no source",
-    validity="One tank that regenerates at night: one average day is usual. Two tanks in turn need next "
-    "to none.",
+    validity="One tank that regenerates at night: one average day is usual. Two tanks in turn need next to none.",
 )
 @broadcasts
 def reserve_of_days(load: Number, days: Number = 1.0) -> Number:

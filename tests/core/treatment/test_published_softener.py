@@ -4,7 +4,7 @@ import pytest
 
 from core.constants import CUBIC_FOOT, GRAIN, INCH, MOLAR_MASS_CACO3, MOLAR_MASS_CAO, POUND, US_GALLON
 from core.errors import InputError
-from core.treatment import blending, demand, peak_flow, regeneration, resin, softener, vessel
+from core.treatment import blending, demand, hydraulics, peak_flow, regeneration, resin, softener, vessel
 from tests.published import rows
 
 FOOT = 12 * INCH / 1000  # m
@@ -134,6 +134,21 @@ SOFTENER = {
         "gallons": regeneration.refill_water(lb * POUND / 1000, temperature) / US_GALLON
     },
     "saturated brine": lambda temperature: {"percent": 100 * regeneration.salt_solubility(temperature)},
+}
+
+GPM_FT2 = US_GALLON / FOOT**2 * 60 / 1000  # m/h
+
+
+def _between(temperature, gpm_ft2):
+    light, heavy = (hydraulics.backwash_velocity(temperature, 0.5, *bead) for bead in ((0.5, 1250), (0.6, 1290)))
+    return {"between": light < gpm_ft2 * GPM_FT2 < heavy}
+
+
+SOFTENER |= {
+    "viscosity": lambda temperature: {"mpas": hydraulics.viscosity(temperature)},
+    "bed pressure loss": lambda velocity, **bed: {"kpa_m": hydraulics.bed_pressure_loss(velocity, 1.0, **bed)},
+    "backwash velocity": lambda **bed: {"gpm_ft2": hydraulics.backwash_velocity(**bed) / GPM_FT2},
+    "backwash between": _between,
 }
 
 DEMAND = {

@@ -9,7 +9,7 @@ and H2O in the numbers given by `made`. Its constant is log10 K of that reaction
 "usgs2024" is the USGS file of May 2024 [USGS24]: a new calcite fit, a weaker CaHCO3+, no NaCO3-.
 Brucite stands in neither file and is taken from [WATEQ4F]; vaterite from [PB82] in both.
 Left out as too small to matter in water people use: the dimer of CO2, complexes with HSO4-, second chlorides and
-hydroxides of iron and manganese.
+nitrates of manganese.
 """
 
 from __future__ import annotations
@@ -120,6 +120,8 @@ _COMMON: tuple[Species, ...] = (
     Species("FeHCO3+", "Fe", 1, (1, 1, 0, 0), _sum(HCO3, _at_25(2.0)), None, None, _B),
     Species("FeSO4", "Fe", 0, (0, 0, 1, 0), _at_25(2.25, 3.23 * KCAL), None, None, _B),
     Species("FeOH+", "Fe", 1, (-1, 0, 0, 1), _at_25(-9.5, 13.2 * KCAL), 5.0, None, _B),
+    Species("Fe(OH)2", "Fe", 0, (-2, 0, 0, 2), _at_25(-20.57, 28.565 * KCAL), None, None, _B),
+    Species("Fe(OH)3-", "Fe", -1, (-3, 0, 0, 3), _at_25(-31.0, 30.3 * KCAL), 5.0, None, _B),
     Species("FeCl+", "Fe", 1, (0, 0, 0, 0), _at_25(0.14), None, None, _B, "Cl"),
     Species("FeF+", "Fe", 1, (0, 0, 0, 0), _at_25(1.0), None, None, _B, "F"),
     Species("Mn+2", "Mn", 2, (0, 0, 0, 0), ZERO, 6.0, None, _B),
@@ -127,6 +129,7 @@ _COMMON: tuple[Species, ...] = (
     Species("MnHCO3+", "Mn", 1, (1, 1, 0, 0), _sum(HCO3, _at_25(1.95)), 5.0, None, _B),
     Species("MnSO4", "Mn", 0, (0, 0, 1, 0), _at_25(2.25, 3.37 * KCAL), None, None, _B),
     Species("MnOH+", "Mn", 1, (-1, 0, 0, 1), _at_25(-10.59, 14.4 * KCAL), 5.0, None, _B),
+    Species("Mn(OH)3-", "Mn", -1, (-3, 0, 0, 3), _at_25(-34.8), 5.0, None, _B),
     Species("MnCl+", "Mn", 1, (0, 0, 0, 0), _at_25(0.61), 5.0, None, _B, "Cl"),
     Species("MnF+", "Mn", 1, (0, 0, 0, 0), _at_25(0.84), 5.0, None, _B, "F"),
     # strontium, barium

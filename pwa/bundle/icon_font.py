@@ -25,6 +25,7 @@ DRAWN_BY_CONTROLS = (
     "chevron_left",
     "chevron_right",
     "clear",
+    "done",
     "close",
     "error",
     "expand_less",

@@ -106,6 +106,29 @@ def test_writing_the_image_anew_loses_nothing(shared):
     assert found == [[1, 2, 3, 0, 1, 2, 3, 0, 1, 2], [f"id{n}" for n in range(1, 10)], '"dark"']
 
 
+def test_image_and_changes_are_replaced_together_or_not_at_all(shared):
+    """Where writing the image fails half-way, image, changes and revision are all as before."""
+    shared.open("together")
+    found = shared.run("""
+    await storage.save("a", "{}", "First")
+    disk = storage._keeper._disk
+    before = await disk.read()
+    try:
+        await disk.replace(b"not to be kept", before.revision, {"what no store can hold": object()})
+        said = "kept"
+    except StorageError as error:
+        said = str(error)
+    same = await disk.read() == before
+    await storage.save("b", "{}", "Second")
+    await storage.close()
+    storage = await opened("together")
+    names = sorted(row.name for row in await storage.list_jobs())
+    await storage.close()
+    [said[:39], same, names]
+    """)
+    assert found == ["The browser could not save or read (Abo", True, ["First", "Second"]]
+
+
 def test_a_full_disk_is_a_sentence_and_loses_nothing(context, url):
     """With no room left a save says so and changes nothing; with room again the same save works."""
     tab = Tab(context, url)

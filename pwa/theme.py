@@ -117,29 +117,24 @@ SMALL = 14.0
 SCALES = {"normal": 1.0, "large": 1.3, "largest": 2.0}
 
 
-def _style(size: float, scale: float, weight: ft.FontWeight = ft.FontWeight.W_400) -> ft.TextStyle:
-    return ft.TextStyle(
-        size=size * scale,
-        weight=weight,
-        font_family=FONT,
-        height=1.3,
-    )
-
-
-def _text_theme(scale: float) -> ft.TextTheme:
+def _text_theme(colours: Palette, scale: float) -> ft.TextTheme:
     bold = ft.FontWeight.W_600
+
+    def style(size: float, weight: ft.FontWeight = ft.FontWeight.W_400) -> ft.TextStyle:
+        return ft.TextStyle(size=size * scale, weight=weight, font_family=FONT, height=1.3, color=colours.ink)
+
     return ft.TextTheme(
-        display_small=_style(FIGURE, scale, bold),
-        headline_small=_style(LEAD, scale, bold),
-        title_large=_style(LEAD, scale, bold),
-        title_medium=_style(TITLE, scale, bold),
-        title_small=_style(BODY, scale, bold),
-        body_large=_style(BODY, scale),
-        body_medium=_style(BODY, scale),
-        body_small=_style(SMALL, scale),
-        label_large=_style(BODY, scale, ft.FontWeight.W_500),
-        label_medium=_style(SMALL, scale),
-        label_small=_style(SMALL, scale),
+        display_small=style(FIGURE, bold),
+        headline_small=style(LEAD, bold),
+        title_large=style(LEAD, bold),
+        title_medium=style(TITLE, bold),
+        title_small=style(BODY, bold),
+        body_large=style(BODY),
+        body_medium=style(BODY),
+        body_small=style(SMALL),
+        label_large=style(BODY, ft.FontWeight.W_500),
+        label_medium=style(SMALL),
+        label_small=style(SMALL),
     )
 
 
@@ -186,5 +181,5 @@ def theme(colours: Palette, scale: float) -> ft.Theme:
             inverse_primary=colours.accent_soft,
             shadow="#33000000",
         ),
-        text_theme=_text_theme(scale),
+        text_theme=_text_theme(colours, scale),
     )

@@ -86,7 +86,7 @@ class Assumption:
     """A value used because nothing was entered; never shown as if it had been measured."""
 
     field: str
-    amount: Amount
+    amount: Amount | None  # None where more than a number was assumed
     why: str
     source: str
 

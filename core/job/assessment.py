@@ -8,6 +8,7 @@ from core.job.answers import Part
 from core.job.blend import assess_blend
 from core.job.demand import Demand, assess_demand
 from core.job.record import Job
+from core.job.scale import assess_scale
 from core.job.softener import assess_softener
 from core.job.water import assess_water
 
@@ -27,6 +28,11 @@ class Assessment:
     def demand(self) -> Part:
         """How much water, how fast."""
         return self._demand.part
+
+    @cached_property
+    def scale(self) -> Part:
+        """Lime in the heater, balance at the tap, attack on pipes."""
+        return assess_scale(self.job, self._demand)
 
     @cached_property
     def softener(self) -> Part:

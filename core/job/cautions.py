@@ -69,6 +69,21 @@ SCALD = Caution(
     "common practice, no source",
 )
 
+INDICES = Caution(
+    "indices",
+    "note",
+    "Indices say which way a water leans, not how fast a pipe corrodes. They are computed as if no phosphate or other "
+    "inhibitor were in the water.",
+    "common practice, no source",
+)
+METALS_IN_SOUR_WATER = Caution(
+    "sour_water",
+    "care",
+    "Water below pH 7.4 with much carbon dioxide takes up copper, and lead where old pipes or solder are left: have "
+    "the first water of the morning tested before anyone drinks it.",
+    "common practice, no source",
+)
+
 IRON_CARE = 1.0  # mg/L, from where a household softener needs help; common practice, no source
 
 
@@ -87,3 +102,8 @@ def softener_cautions(salt: str, iron: float | None) -> tuple[Caution, ...]:
 def blend_cautions(salt: str) -> tuple[Caution, ...]:
     """What to mind with softened water at the taps, blended or not."""
     return (POTASSIUM if salt == "kcl" else SODIUM, METALS, LOCAL_CODE)
+
+
+def scale_cautions() -> tuple[Caution, ...]:
+    """What to mind when speaking of lime, heaters and pipes."""
+    return (INDICES, METALS_IN_SOUR_WATER)

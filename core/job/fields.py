@@ -244,6 +244,29 @@ _DEMAND = (
     ),
 )
 
+_SCALE = (
+    Field(
+        "scale.heater_temperature",
+        "Heater setting",
+        "temperature",
+        ("°C", "°F"),
+        20.0,
+        90.0,
+        "The hotter, the more lime.",
+        Default(60.0, "°C", "A usual setting for storage heaters, against legionella."),
+    ),
+    Field(
+        "scale.hot_share",
+        "Share that is heated",
+        "share",
+        ("%",),
+        0.0,
+        1.0,
+        "Of all the water used.",
+        Default(35.0, "%", "Hot water is 30 to 40 % of indoor use."),
+    ),
+)
+
 _SOFTENER = (
     Field(
         "softener.resin",
@@ -335,7 +358,7 @@ _BLEND = (
     ),
 )
 
-FIELDS: dict[str, Field] = {entry.key: entry for entry in (*_WATER, *_DEMAND, *_SOFTENER, *_BLEND)}
+FIELDS: dict[str, Field] = {entry.key: entry for entry in (*_WATER, *_SCALE, *_DEMAND, *_SOFTENER, *_BLEND)}
 
 CHOICES: dict[str, Choice] = {
     choice.key: choice
@@ -388,4 +411,10 @@ CHOICES: dict[str, Choice] = {
     )
 }
 
-SECTIONS: dict[str, str] = {"water": "Water", "demand": "Demand", "softener": "Softener", "blend": "Blend"}
+SECTIONS: dict[str, str] = {
+    "water": "Water",
+    "demand": "Demand",
+    "scale": "Scale",
+    "softener": "Softener",
+    "blend": "Blend",
+}

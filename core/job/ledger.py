@@ -58,6 +58,12 @@ class Ledger:
         """Whether the user has decided."""
         return key in self.job.choices
 
+    def turn(self, value: float, quantity: str, unit: str, other_unit: str) -> float:
+        """A result in another unit, as a step of its own."""
+        turn = partial(_turned, unit=unit, core_unit=other_unit, quantity=quantity)
+        card = _turning_card(quantity, unit, other_unit)
+        return self.working.add(Step(card, turn, {"reading": value}, turn(reading=value)))
+
     def take(self, other: Ledger, *results: Any) -> None:
         """Take over the account of another part, and the steps that led to these results."""
         known = {id(step) for step in self.working.steps}
@@ -129,6 +135,11 @@ def _reading_card(key: str, unit: str) -> Card:
         takes={"reading": unit},
         source="definition" if same else "EXACT",
     )
+
+
+@cache
+def _turning_card(quantity: str, unit: str, other_unit: str) -> Card:
+    return Card(quantity.capitalize(), f"{unit} turned into {other_unit}", other_unit, {"reading": unit}, "EXACT")
 
 
 def _range(entry: Field, unit: str) -> str:

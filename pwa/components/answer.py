@@ -150,6 +150,14 @@ def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Contro
     return ft.Column(spacing=2, controls=controls)
 
 
+def spoken(part: Part, display: Display) -> str:
+    """A part's headline in one breath, for a screen reader."""
+    headline = part.headline
+    if headline is None:
+        return " ".join(missing.text for missing in part.missing) or "nothing to answer yet"
+    return f"{display.show(headline.amount)}. {display.say(headline.words)}"
+
+
 def _badge(name: str) -> ft.Control:
     tone = TONES[name]
     return ft.Row(

@@ -9,6 +9,7 @@ from core.units import convert
 from pwa import theme
 from pwa.components.box import Box
 from pwa.components.guard import guarded
+from pwa.components.words import Tappable
 from pwa.state.display import Display, unit_shown
 from pwa.text import format_number, parse_quantity
 
@@ -50,31 +51,24 @@ def Tile(name: str, chosen: str, value: float | None, display: Display, choose) 
     is_chosen = name == chosen
     unit = unit_shown(name)
     shown = "–" if value is None else format_number(convert(value, chosen, name), unit=name, decimal=display.decimal)
-    return ft.Semantics(
-        container=True,
-        button=True,
-        selected=is_chosen,
-        exclude_semantics=True,
-        label=f"{shown} {unit}" + (", as read" if is_chosen else ""),
-        on_tap=lambda event: choose(),
-        expand=True,
-        content=ft.Container(
-            ink=True,
-            on_click=lambda event: choose(),
-            padding=ft.Padding.symmetric(horizontal=12, vertical=6),
-            border_radius=theme.RADIUS,
-            border=ft.Border.all(2 if is_chosen else 1, ft.Colors.PRIMARY if is_chosen else ft.Colors.OUTLINE_VARIANT),
-            bgcolor=ft.Colors.PRIMARY_CONTAINER if is_chosen else None,
-            content=ft.Column(
-                spacing=0,
-                controls=[
-                    ft.Text(shown, theme_style=ft.TextThemeStyle.TITLE_LARGE),
-                    ft.Text(
-                        f"{unit} · as read" if is_chosen else unit,
-                        theme_style=ft.TextThemeStyle.BODY_SMALL,
-                        color=ft.Colors.ON_SURFACE_VARIANT,
-                    ),
-                ],
-            ),
+    return Tappable(
+        f"{shown} {unit}" + (", as read" if is_chosen else ""),
+        lambda event: choose(),
+        ft.Column(
+            spacing=0,
+            controls=[
+                ft.Text(shown, theme_style=ft.TextThemeStyle.TITLE_LARGE),
+                ft.Text(
+                    f"{unit} · as read" if is_chosen else unit,
+                    theme_style=ft.TextThemeStyle.BODY_SMALL,
+                    color=ft.Colors.ON_SURFACE_VARIANT,
+                ),
+            ],
         ),
+        selected=is_chosen,
+        expand=True,
+        padding=ft.Padding.symmetric(horizontal=12, vertical=6),
+        border_radius=theme.RADIUS,
+        border=ft.Border.all(2 if is_chosen else 1, ft.Colors.PRIMARY if is_chosen else ft.Colors.OUTLINE_VARIANT),
+        bgcolor=ft.Colors.PRIMARY_CONTAINER if is_chosen else None,
     )

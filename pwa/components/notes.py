@@ -12,6 +12,7 @@ from core.references import REFERENCES
 from pwa import theme
 from pwa.components.guard import guarded
 from pwa.components.tone import ToneLine
+from pwa.components.words import Heading, Tappable
 from pwa.components.working import Working
 from pwa.state.display import Display
 from pwa.state.sheet import PartState
@@ -56,7 +57,7 @@ def _list(part: Part, display: Display, open_) -> ft.Control:
     return ft.Column(
         spacing=0,
         controls=[
-            ft.Text("Answers, each opening to its working", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+            Heading("Answers, each opening to its working"),
             *[AnswerRow(answer, display, open_) for answer in part.answers.values()],
         ],
     )
@@ -64,38 +65,25 @@ def _list(part: Part, display: Display, open_) -> ft.Control:
 
 def AnswerRow(answer: Answer, display: Display, open_) -> ft.Control:
     """One answer in a list: its name, its number, its words; a tap opens the working."""
-    return ft.Semantics(
-        container=True,
-        button=True,
-        label=f"{answer.label}: {display.show(answer.amount)}. Show working",
-        exclude_semantics=True,
-        on_tap=lambda event: open_(answer.key),
-        content=ft.Container(
-            ink=True,
-            on_click=lambda event: open_(answer.key),
-            padding=ft.Padding.symmetric(vertical=12),
-            border=ft.Border.only(bottom=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
-            content=ft.Column(
-                spacing=2,
-                controls=[
-                    ft.Row(
-                        alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
-                        controls=[
-                            ft.Text(answer.label, expand=True),
-                            ft.Text(display.show(answer.amount), weight=ft.FontWeight.W_600),
-                            ft.Icon(ft.Icons.CHEVRON_RIGHT, color=ft.Colors.ON_SURFACE_VARIANT),
-                        ],
-                    ),
-                    ToneLine(answer.tone, display.say(answer.words))
-                    if answer.tone != "plain"
-                    else ft.Text(
-                        display.say(answer.words),
-                        theme_style=ft.TextThemeStyle.BODY_SMALL,
-                        color=ft.Colors.ON_SURFACE_VARIANT,
-                    ),
-                ],
-            ),
+    return Tappable(
+        f"{answer.label}: {display.show(answer.amount)}. Show working",
+        lambda event: open_(answer.key),
+        ft.Column(
+            spacing=2,
+            controls=[
+                ft.Row(
+                    alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
+                    controls=[
+                        ft.Text(answer.label, expand=True),
+                        ft.Text(display.show(answer.amount), weight=ft.FontWeight.W_600),
+                        ft.Icon(ft.Icons.CHEVRON_RIGHT, color=ft.Colors.ON_SURFACE_VARIANT),
+                    ],
+                ),
+                ToneLine(answer.tone, display.say(answer.words)),
+            ],
         ),
+        padding=ft.Padding.symmetric(vertical=12),
+        border=ft.Border.only(bottom=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
     )
 
 
@@ -103,7 +91,7 @@ def _cautions(part: Part) -> list[ft.Control]:
     if not part.cautions:
         return []
     return [
-        ft.Text("Mind", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+        Heading("Mind"),
         *[ToneLine(caution.level, f"{caution.text} {_cited(caution.source)}") for caution in part.cautions],
     ]
 
@@ -112,15 +100,16 @@ def _assumptions(part: Part, display: Display) -> list[ft.Control]:
     if not part.assumptions:
         return []
     return [
-        ft.Text("Assumed, not measured", theme_style=ft.TextThemeStyle.TITLE_SMALL),
+        Heading("Assumed, not measured"),
         *[ToneLine("note", _assumed(assumption, display)) for assumption in part.assumptions],
     ]
 
 
 def _assumed(assumption: Assumption, display: Display) -> str:
     named = FIELDS.get(assumption.field) or CHOICES.get(assumption.field)
-    name = named.label if named else assumption.field
-    return f"{name}: {display.show(assumption.amount)}. {assumption.why} {_cited(assumption.source)}"
+    name = named.label if named else "Other ions"
+    value = f": {display.show(assumption.amount)}." if assumption.amount else "."
+    return f"{name}{value} {assumption.why} {_cited(assumption.source)}"
 
 
 def _cited(key: str) -> str:

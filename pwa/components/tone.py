@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import flet as ft
 
 from pwa import theme
+from pwa.components.words import Note
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,6 +34,8 @@ TONES = {
 def ToneLine(tone: str, text: str) -> ft.Control:
     """A sentence led by the sign of its tone; the tone's word is part of what is read aloud."""
     look = TONES[tone]
+    if tone == "plain":
+        return Note(text)
     return ft.Row(
         spacing=theme.GAP,
         vertical_alignment=ft.CrossAxisAlignment.START,

@@ -1,4 +1,4 @@
-"""How an answer came about: each step with its formula, the numbers put in, the result, the source, the validity."""
+"""How an answer came about: what was read, then each step with its formula, numbers, result, source and validity."""
 
 from __future__ import annotations
 
@@ -8,19 +8,40 @@ from core.job.answers import Answer
 from core.references import REFERENCES
 from core.working import Step
 from pwa import theme
-from pwa.state.display import Display
+from pwa.components.words import Heading, Note
+from pwa.state.display import Display, unit_shown
 from pwa.text import format_number
+
+DIGITS = 4  # that count, in working: one more than answers show
 
 
 def Working(answer: Answer, display: Display) -> ft.Control:
-    """The answer, then its steps in order."""
+    """The answer, the readings it began from, then its steps in order."""
+    readings = [step for step in answer.steps if "reading" in step.inputs]
+    steps = [step for step in answer.steps if "reading" not in step.inputs]
     return ft.Column(
-        scroll=ft.ScrollMode.AUTO,
         spacing=theme.PAD,
         controls=[
             ft.Text(answer.label, theme_style=ft.TextThemeStyle.TITLE_MEDIUM),
             ft.Text(display.say(answer.words)),
-            *[StepBlock(number, step, display) for number, step in enumerate(answer.steps, start=1)],
+            Heading("From"),
+            ft.Column(spacing=theme.GAP, controls=[ReadingLine(step, display) for step in readings]),
+            *[StepBlock(number, step, display) for number, step in enumerate(steps, start=1)],
+        ],
+    )
+
+
+def ReadingLine(step: Step, display: Display) -> ft.Control:
+    """One reading: as it was entered, what that is in the unit of the formulas, and where it comes from."""
+    card = step.card
+    read = amount(step.inputs["reading"], card.takes["reading"], display)
+    reckoned = amount(step.result, card.unit, display)
+    same = card.takes["reading"] == card.unit
+    return ft.Column(
+        spacing=0,
+        controls=[
+            ft.Text(f"{card.quantity} = {read}" + ("" if same else f" = {reckoned}")),
+            Note(step.note),
         ],
     )
 
@@ -31,27 +52,25 @@ def StepBlock(number: int, step: Step, display: Display) -> ft.Control:
     lines: list[ft.Control] = [
         ft.Text(f"{number}. {card.quantity}", theme_style=ft.TextThemeStyle.TITLE_SMALL),
         ft.Text(card.expression, italic=True),
-        *[_input(name, value, card.takes.get(name, ""), display) for name, value in step.inputs.items()],
-        ft.Text(f"= {_number(step.result, card.unit, display)}", weight=ft.FontWeight.W_600, color=ft.Colors.PRIMARY),
+        *[
+            ft.Text(f"{name.replace('_', ' ')} = {amount(value, card.takes.get(name, ''), display)}")
+            for name, value in step.inputs.items()
+        ],
+        ft.Text(f"= {amount(step.result, card.unit, display)}", weight=ft.FontWeight.W_600, color=ft.Colors.PRIMARY),
     ]
-    lines += [_small(text) for text in (step.note, card.validity, _source(card.source)) if text]
+    lines += [Note(text) for text in (step.note, card.validity, source_of(card.source)) if text]
     return ft.Column(spacing=2, controls=lines)
 
 
-def _input(name: str, value: object, unit: str, display: Display) -> ft.Control:
-    return ft.Text(f"{name.replace('_', ' ')} = {_number(value, unit, display)}")
-
-
-def _number(value: object, unit: str, display: Display) -> str:
+def amount(value: object, unit: str, display: Display) -> str:
+    """A number of the working with its unit; a share of one is shown as a plain number."""
     if isinstance(value, int | float) and not isinstance(value, bool):
-        return f"{format_number(float(value), digits=4, decimal=display.decimal)} {unit}".rstrip()
+        number = format_number(float(value), digits=DIGITS, decimal=display.decimal)
+        return number if unit == "1" else f"{number} {unit_shown(unit)}".rstrip()
     return f"{value}"
 
 
-def _source(key: str) -> str:
-    reference = REFERENCES.get(key.partition(" ")[0])
+def source_of(key: str) -> str:
+    """A source in full, with how well it was checked."""
+    reference = REFERENCES.get(key)
     return f"Source: {reference.citation} ({reference.status})" if reference else f"Source: {key}"
-
-
-def _small(text: str) -> ft.Control:
-    return ft.Text(text, theme_style=ft.TextThemeStyle.BODY_SMALL, color=ft.Colors.ON_SURFACE_VARIANT)

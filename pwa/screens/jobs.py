@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Awaitable, Callable
+from typing import Any
+
 import flet as ft
 
 from pwa import theme
@@ -10,6 +13,7 @@ from pwa.components.box import Box
 from pwa.components.converter import Converter
 from pwa.components.guard import guarded
 from pwa.components.job_row import JobCard
+from pwa.components.words import Disclosure, Heading, Note, Tappable
 from pwa.samples import SAMPLES, load_sample
 from pwa.state.workspace import JobList, Preferences, Workspace
 
@@ -86,7 +90,7 @@ def Jobs(jobs: JobList, workspace: Workspace) -> ft.Control:
         ft.Row(
             alignment=ft.MainAxisAlignment.SPACE_BETWEEN,
             controls=[
-                ft.Text("Jobs", theme_style=ft.TextThemeStyle.HEADLINE_SMALL),
+                Heading("Jobs", 1),
                 ft.TextButton("Open a file", icon=ft.Icons.FILE_OPEN_OUTLINED, on_click=open_file),
             ],
         ),
@@ -100,25 +104,33 @@ def Jobs(jobs: JobList, workspace: Workspace) -> ft.Control:
         controls.append(ft.TextButton(f"Show more of {jobs.total}", on_click=workspace.more))
     if jobs.opened and not jobs.rows:
         none = "No job holds these words." if jobs.search else "No jobs yet. Begin one, or open an example below."
-        controls.append(ft.Text(none, color=ft.Colors.ON_SURFACE_VARIANT))
+        controls.append(Note(none))
     controls.append(Samples(workspace))
     return ft.Column(spacing=theme.GAP, horizontal_alignment=ft.CrossAxisAlignment.STRETCH, controls=controls)
 
 
+@guarded
 def Samples(workspace: Workspace) -> ft.Control:
     """Invented jobs to try the app on."""
+    opened, set_opened = ft.use_state(False)
 
-    async def load(name: str) -> None:
-        ft.context.page.navigate(f"/job/{await workspace.add_copy(load_sample(name))}")
+    def loader(name: str) -> Callable[[Any], Awaitable[None]]:
+        async def load(event: Any) -> None:
+            ft.context.page.navigate(f"/job/{await workspace.add_copy(load_sample(name))}")
 
-    def loader(name: str):
-        async def on_click() -> None:
-            await load(name)
+        return load
 
-        return on_click
-
-    return ft.ExpansionTile(
-        title="Examples",
-        subtitle="Invented places; each opens as a job of its own",
-        controls=[ft.ListTile(title=title, subtitle=story, on_click=loader(name)) for name, title, story in SAMPLES()],
+    rows = [
+        Tappable(
+            title,
+            loader(name),
+            ft.Column(spacing=2, controls=[ft.Text(title), Note(story)]),
+            padding=ft.Padding.symmetric(vertical=12),
+            border=ft.Border.only(bottom=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
+        )
+        for name, title, story in (SAMPLES() if opened else ())
+    ]
+    words = "Invented places; each opens as a job of its own"
+    return ft.Column(
+        spacing=0, controls=[Disclosure("Examples", words, opened, lambda event: set_opened(not opened)), *rows]
     )

@@ -10,6 +10,7 @@ from pwa.components.answer import AnswerStrip
 from pwa.components.entry import ChoiceField, EntryField
 from pwa.components.guard import guarded
 from pwa.components.notes import Answers
+from pwa.components.words import Disclosure
 from pwa.state.display import Display
 from pwa.state.sheet import Sheet
 from pwa.state.workspace import Preferences, Workspace
@@ -60,12 +61,10 @@ def More(sheet: Sheet, section: str, display: Display) -> ft.Control:
     rare = _entries(sheet, section, display, often=False)
     if not rare:
         return ft.Container(height=0)
-    word = "Fewer entries" if opened else "More entries"
-    icon = ft.Icons.EXPAND_LESS if opened else ft.Icons.EXPAND_MORE
     return ft.Column(
         spacing=theme.PAD,
         controls=[
-            ft.TextButton(word, icon=icon, on_click=lambda event: set_opened(not opened)),
+            Disclosure("Fewer entries" if opened else "More entries", "", opened, lambda event: set_opened(not opened)),
             *(rare if opened else []),
         ],
     )

@@ -8,10 +8,11 @@ import flet as ft
 
 from core.job.fields import SECTIONS
 from pwa import theme
-from pwa.components.answer import AnswerBlock
+from pwa.components.answer import AnswerBlock, spoken
 from pwa.components.banner import Banners
 from pwa.components.box import Box
 from pwa.components.guard import guarded
+from pwa.components.words import Tappable
 from pwa.state.display import Display
 from pwa.state.sheet import Heading, PartState, Sheet
 from pwa.state.workspace import Preferences, Workspace
@@ -62,14 +63,10 @@ def SectionCard(state: PartState, title: str, job_id: str, shown: Callable[[], D
 
     part = state.part
     body = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, shown())
-    return ft.Container(
-        ink=True,
-        on_click=open_,
-        bgcolor=ft.Colors.SURFACE,
-        border_radius=theme.RADIUS,
-        border=ft.Border.all(2 if chosen else 1, ft.Colors.PRIMARY if chosen else ft.Colors.OUTLINE_VARIANT),
-        padding=theme.PAD,
-        content=ft.Column(
+    return Tappable(
+        f"{title}: {spoken(part, shown()) if part else 'not ready yet'}",
+        open_,
+        ft.Column(
             spacing=theme.GAP,
             controls=[
                 ft.Row(
@@ -82,4 +79,8 @@ def SectionCard(state: PartState, title: str, job_id: str, shown: Callable[[], D
                 body,
             ],
         ),
+        bgcolor=ft.Colors.SURFACE,
+        border_radius=theme.RADIUS,
+        border=ft.Border.all(2 if chosen else 1, ft.Colors.PRIMARY if chosen else ft.Colors.OUTLINE_VARIANT),
+        padding=theme.PAD,
     )

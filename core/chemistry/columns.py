@@ -18,12 +18,13 @@ from core.chemistry.thermodynamics import evaluate
 Floats = NDArray[np.float64]
 
 MILLI = 1e-3
+READ_TO, READ_TO_SHARE = 1e-6, 0.01  # mol/kg and share of it that a titration is read to
 MOST_CARBON = 10.0  # mol/kg; far above what water holds at any pressure met
-OK, UNKNOWN, HYDROXIDE, CARBON, LOST = range(5)
+OK, UNKNOWN, NO_CARBON, CARBON, LOST = range(5)
 REASONS = (
     "",
     "An input is not known (NaN).",
-    "At this pH hydroxide alone exceeds the alkalinity given: pH and alkalinity do not fit together.",
+    "Even without carbonate this pH means more alkalinity than was given: pH and alkalinity do not fit together.",
     "This pH and alkalinity would need more dissolved CO2 than water holds: they do not fit together.",
     f"No equilibrium was found within {ITERATIONS} steps.",
 )
@@ -149,21 +150,39 @@ def settle(cols: Columns) -> State | None:
         return None
     by_alkalinity = cols.alkalinity is not None
     sulfur = np.maximum(cols.sulfur, NOTHING)
-    carbon = 0.5 * cols.alkalinity if cols.alkalinity is not None else np.maximum(cols.dic, NOTHING)
+    known = 0.5 * cols.alkalinity if cols.alkalinity is not None else np.maximum(cols.dic, NOTHING)
     problem = Problem(
         cols.model(),
         cols.temp_c,
         cols.totals,
-        np.array([np.zeros_like(carbon), carbon, sulfur]),
+        np.array([np.zeros_like(known), known, sulfur]),
         KNOWN_PH_ALK if by_alkalinity else KNOWN_PH_DIC,
         ln_h=-LN10 * cols.ph,
     )
     state = _marked(cols, solve(problem))
     if by_alkalinity:
-        cols.dic = state.sums[C].copy()
-    else:
-        cols.alkalinity = 2.0 * state.sums[C] - state.sums[H]
+        _admit_without_carbon(cols, state)
+    answered = cols.why == OK
+    cols.dic = np.where(answered, state.sums[C], 0.0)
+    cols.alkalinity = np.where(answered, 2.0 * state.sums[C] - state.sums[H], 0.0)
     return state
+
+
+def _admit_without_carbon(cols: Columns, state: State) -> None:
+    """Waters with no carbonate at all, where pH and alkalinity agree as closely as they can be read."""
+    rows = np.flatnonzero(cols.why == NO_CARBON)
+    if not rows.size or cols.alkalinity is None:
+        return
+    part = cols.part(rows)
+    told = cols.alkalinity[rows]
+    part.alkalinity, part.dic = None, np.zeros(rows.size)
+    part.why[:] = OK
+    found = settle(part)
+    close = np.abs(part.alkalinity - told) <= READ_TO + READ_TO_SHARE * np.abs(told)
+    admitted = close & (part.why == OK)
+    if found is not None and admitted.any():
+        state.put(rows[admitted], found, admitted)
+        cols.why[rows[admitted]] = OK
 
 
 def _marked(cols: Columns, state: State) -> State:
@@ -171,7 +190,7 @@ def _marked(cols: Columns, state: State) -> State:
     lost = ~state.converged & (cols.why == OK)
     no_carbon = lost & (state.x[C] < -40.0) & (cols.alkalinity is not None)
     cols.why[lost] = LOST
-    cols.why[no_carbon] = HYDROXIDE
+    cols.why[no_carbon] = NO_CARBON
     with np.errstate(invalid="ignore"):
         cols.why[(cols.why == OK) & (state.sums[C] > MOST_CARBON)] = CARBON
     return state
@@ -208,6 +227,11 @@ def resolved(solution: Solution) -> Solution:
     return as_solution(cols, find(cols), solution)
 
 
+def carbon(state: State) -> Floats:
+    """All dissolved carbonate and CO2; a plain zero where there is none. [mol/kg]"""
+    return np.maximum(state.sums[C] - NOTHING, 0.0)
+
+
 def with_nan(cols: Columns, flat_values: Floats) -> Floats:
     """Results with NaN where a water has no answer."""
     if not cols.why.any():
@@ -229,5 +253,5 @@ def as_solution(
     values["temp_c"] = given.temp_c if temp_c is None else temp_c
     values["ph"] = cols.out(with_nan(cols, -state.x[H] / LN10))
     values["alkalinity"] = cols.out(with_nan(cols, (2.0 * state.sums[C] - state.sums[H]) / MILLI))
-    values["dic"] = cols.out(with_nan(cols, state.sums[C] / MILLI))
+    values["dic"] = cols.out(with_nan(cols, carbon(state) / MILLI))
     return solved(**values)

@@ -45,10 +45,11 @@ class State:
     sums: Floats  # SUMS × waters
     converged: NDArray[np.bool_]
 
-    def put(self, rows: NDArray[np.intp], other: State) -> None:
-        """Replace some of the waters by others."""
+    def put(self, rows: NDArray[np.intp], other: State, chosen: NDArray[np.bool_] | None = None) -> None:
+        """Replace some of the waters by others, or by the chosen ones of them."""
         for name in State.__slots__:
-            getattr(self, name)[..., rows] = getattr(other, name)
+            new = getattr(other, name)
+            getattr(self, name)[..., rows] = new if chosen is None else new[..., chosen]
 
 
 def solve(problem: Problem) -> State:

@@ -15,6 +15,7 @@ from core.chemistry.columns import (
     UNKNOWN,
     Columns,
     as_solution,
+    carbon,
     columns,
     find,
     find_open,
@@ -84,7 +85,7 @@ class Speciation:
     @cached_property
     def dic(self) -> Value:
         """All dissolved carbonate and CO2. [mmol/kg]"""
-        return self._out(self._state.sums[C] / MILLI)
+        return self._out(carbon(self._state) / MILLI)
 
     @cached_property
     def co2(self) -> Value:

@@ -65,6 +65,10 @@ REFERENCES: dict[str, Reference] = {
         "German water industry association, use per person and day, as reported by news items 2019 and 2023",
         "secondary",
     ),
+    "DIN19636-100": Reference(
+        "DIN 19636-100, softeners with cation exchangers in drinking-water installations",
+        "from memory",
+    ),
     "DIN1988-300": Reference(
         "DIN 1988-300, peak flow of drinking-water installations, as a German building-services glossary gives it",
         "secondary",
@@ -85,6 +89,14 @@ REFERENCES: dict[str, Reference] = {
     ),
     "EN12502-3": Reference(
         "EN 12502-3:2004, protection of metallic materials against corrosion: hot dip galvanised ferrous materials",
+        "from memory",
+    ),
+    "EN1717": Reference(
+        "EN 1717, protection against pollution of potable water, and UK practice on fluid categories",
+        "from memory",
+    ),
+    "EN806-5": Reference(
+        "EN 806-5, operation and maintenance of drinking-water installations",
         "from memory",
     ),
     "EPA-DWR": Reference(
@@ -113,7 +125,8 @@ REFERENCES: dict[str, Reference] = {
         "from memory",
     ),
     "GUM": Reference(
-        "JCGM 100:2008, Guide to the expression of uncertainty in measurement (GUM), sections 4.3 and 5.1", "from memory"
+        "JCGM 100:2008, Guide to the expression of uncertainty in measurement (GUM), sections 4.3 and 5.1",
+        "from memory",
     ),
     "HEATER-SITES": Reference(
         "US engineering-society paper on residential water heaters at four sites, abstract",
@@ -149,6 +162,10 @@ REFERENCES: dict[str, Reference] = {
     "KIT-MAKER": Reference("A test-kit maker's support note on accuracy at low hardness", "checked"),
     "LARSON58": Reference(
         "Larson, T.E. and Skold, R.V., 1958, Corrosion 14, 285: chloride and sulfate against alkalinity",
+        "from memory",
+    ),
+    "LHS79": Reference(
+        "M. D. McKay, R. J. Beckman, W. J. Conover, Technometrics 21 (1979) 239: sampling in even layers",
         "from memory",
     ),
     "LIME-COURSE": Reference(
@@ -216,6 +233,10 @@ REFERENCES: dict[str, Reference] = {
         "Standard Methods for the Examination of Water and Wastewater, 2340 C, hardness by EDTA titration",
         "from memory",
     ),
+    "SOBOL93": Reference(
+        "I. M. Sobol, Sensitivity estimates for nonlinear mathematical models, Math. Model. Comput. Exp. 1 (1993) 407",
+        "from memory",
+    ),
     "TJ74": Reference(
         "Truesdell, A.H. and Jones, B.F., 1974, J. Res. U.S. Geol. Survey 2, 233: ion sizes, extended "
         "Debye-Hückel form",
@@ -255,6 +276,7 @@ REFERENCES: dict[str, Reference] = {
         "Uniform Plumbing Code 2021, section 603.4.4, as quoted by the code body",
         "checked",
     ),
+    "UPC603": Reference("Uniform Plumbing Code 2021, section 603.4.4, as the code body quotes it", "checked"),
     "US-DISTRICT": Reference(
         "Softening best-practice list of a sewerage district in the US Midwest",
         "checked",

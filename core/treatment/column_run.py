@@ -5,6 +5,8 @@
     ColumnRun.breakthrough(fraction) -> BV at which the effluent reaches this fraction of the feed's hardness
     ColumnRun.hardness_at(bed_volumes) -> mmol/L
 
+    capacity_roads(water, salt_doses, table=None) -> Roads      trade's table, equilibrium ceiling, ceiling in practice
+
 The figures are an equilibrium ceiling; `resin.practice_capacity` leads from there to what beds do.
 """
 
@@ -12,7 +14,7 @@ from __future__ import annotations
 
 from copy import deepcopy
 from dataclasses import dataclass, replace
-from typing import Any
+from typing import Any, NamedTuple
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -33,6 +35,7 @@ from core.treatment.column import (
     serve,
 )
 from core.treatment.exchange import Floats
+from core.treatment.resin import CapacityTable, practice_capacity, trade_capacity
 
 END_POINT = GRAIN / MOLAR_MASS_CACO3 / US_GALLON  # mmol/L, one grain per gallon [NSF44]
 
@@ -119,6 +122,25 @@ def run_column(
     left = waste.ions + (curve.ions * curve.volume[:, :1]).sum(-1)
     lost = np.abs(before + fed - left - after).max() / np.abs(before + fed).max()
     return _report(_Cycle(feed, dose, ends, waste, fractions, curve), known, shape, float(lost), regeneration)
+
+
+class Roads(NamedTuple):
+    """The two roads to capacity side by side, one element a salt dose."""
+
+    salt_dose: Floats  # g/L
+    trade: Floats  # eq/L by the trade's or the user's table, NaN outside it
+    ceiling: Floats  # eq/L by the column at equilibrium
+    practice: Floats  # eq/L, the ceiling times the practice factor
+    run: ColumnRun
+
+
+def capacity_roads(
+    water: FeedWater, salt_doses: ArrayLike, table: CapacityTable | None = None, **settings: Any
+) -> Roads:
+    """Capacity against salt dose [g/L] on both roads; settings are those of `run_column`."""
+    run = run_column(water, salt_doses, **settings)
+    doses = np.asarray(salt_doses, dtype=float)
+    return Roads(doses, trade_capacity(doses, table), run.capacity, practice_capacity(run.capacity), run)
 
 
 @dataclass(frozen=True, slots=True)

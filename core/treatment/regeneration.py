@@ -16,7 +16,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 from core.data import read_table
-from core.treatment.broadcast import Number, broadcasts, interpolate, ratio
+from core.treatment.broadcast import Number, broadcasts, interpolate, larger, ratio
 from core.treatment.vessel import GPM_PER_SQUARE_FOOT
 from core.working import formula
 
@@ -187,3 +187,40 @@ def regeneration_water(steps: Iterable[Step]) -> Number:
 def regeneration_minutes(steps: Iterable[Step]) -> Number:
     """Time all steps take. [min]"""
     return sum(step.minutes for step in steps)
+
+
+def drain_flow(steps: Iterable[Step]) -> Number:
+    """Highest flow the drain has to take during a regeneration. [L/min]"""
+    flows = [step.flow for step in steps if step.name != "refill"]
+    highest = flows[0]
+    for flow in flows[1:]:
+        highest = larger(highest, flow)
+    return highest
+
+
+@formula(
+    "Salt in store",
+    "store = salt a year × weeks ÷ 52.14",
+    unit="kg",
+    takes={"salt_per_year": "kg/year", "weeks": "weeks"},
+    source="common practice, no source",
+    validity="4 to 12 weeks between fillings are usual.",
+)
+@broadcasts
+def salt_storage(salt_per_year: Number, weeks: Number = 8.0) -> Number:
+    """Salt the brine tank should hold to be filled only every so many weeks. [kg]"""
+    return salt_per_year * weeks * 7.0 / 365.0
+
+
+@formula(
+    "Brine tank",
+    "volume = salt in store ÷ bulk density + refill water",
+    unit="L",
+    takes={"storage": "kg", "refill": "L", "bulk_density": "kg/L"},
+    source="common practice, no source",
+    validity="Pellets and tablets weigh 1.0 to 1.1 kg for each litre they take up.",
+)
+@broadcasts
+def brine_tank_volume(storage: Number, refill: Number, bulk_density: Number = 1.05) -> Number:
+    """Volume of a brine tank that holds this much salt [kg] and the refill water [L]. [L]"""
+    return ratio(storage, bulk_density) + refill

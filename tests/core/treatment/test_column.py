@@ -9,7 +9,7 @@ from core.chemistry import Solution
 from core.constants import ATOMIC_WEIGHTS, MOLAR_MASS_CACO3, MOLAR_MASS_NACL
 from core.errors import InputError
 from core.treatment.column import FeedWater, Resin, feed_water, fresh, regenerate, serve
-from core.treatment.column_run import run_column
+from core.treatment.column_run import capacity_roads, run_column
 from core.treatment.exchange import CHARGE, equilibrate, exchange_constants
 from core.treatment.resin import PRACTICE_RANGE, practice_capacity, trade_table
 from tests.core.treatment.phreeqc_column import BRINE, PORE_PER_BED, Water, advection
@@ -223,3 +223,11 @@ def test_other_constants_replace_the_standard_ones():
     assert run_column(water, 240.0, resin=strong).waste_hardness < run_column(water, 240.0).waste_hardness
     waste = regenerate(fresh(water), water, 100.0)
     assert waste.ions[:2].sum() < 0.05
+
+
+def test_both_roads_stand_side_by_side():
+    """Trade's table, ceiling and practice for the same doses; the table is silent outside its range."""
+    roads = capacity_roads(_feed(W3), [50.0, 96.2, 160.0])
+    assert np.isnan(roads.trade).tolist() == [True, False, False]
+    np.testing.assert_allclose(roads.practice, practice_capacity(roads.ceiling))
+    assert np.all(roads.trade[1:] < roads.ceiling[1:])

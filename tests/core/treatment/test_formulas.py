@@ -31,6 +31,7 @@ VALUES = {
     "WSFU": (6.4, 11.4, 30.0),
     "mm": (203.2, 254.0, 330.2),
 }
+NAMED = {"bead": (0.4, 0.6, 0.8), "density": (1250.0, 1290.0, 1300.0)}
 ORDINARY = (12.0, 31.0, 57.0)
 
 
@@ -41,7 +42,7 @@ def _arguments(function):
     for name, unit in function.card.takes.items():
         if parameters[name].annotation != "Number":
             continue
-        values = VALUES.get(unit, ORDINARY)
+        values = NAMED.get(name) or VALUES.get(unit, ORDINARY)
         turn = len(chosen) % 3  # so that two arguments of one unit differ
         chosen[name] = np.array(values[turn:] + values[:turn])
     return chosen

@@ -4,7 +4,7 @@ import pytest
 
 from core.constants import CUBIC_FOOT, GRAIN, INCH, MOLAR_MASS_CACO3, MOLAR_MASS_CAO, POUND, US_GALLON
 from core.errors import InputError
-from core.treatment import blending, demand, hydraulics, peak_flow, regeneration, resin, softener, vessel
+from core.treatment import blending, demand, hydraulics, peak_flow, regeneration, resin, rules, softener, vessel
 from tests.published import rows
 
 FOOT = 12 * INCH / 1000  # m
@@ -144,11 +144,23 @@ def _between(temperature, gpm_ft2):
     return {"between": light < gpm_ft2 * GPM_FT2 < heavy}
 
 
+def _ratings(grains_per_lb, gal_kgr):
+    met = rules.ratings_met(grains_per_lb * GRAIN_MOL / POUND * 1000, gal_kgr * US_GALLON / (1000 * GRAIN_MOL))
+    return {rating.key: rating.key in met for rating in rules.efficiency_ratings()}
+
+
 SOFTENER |= {
     "viscosity": lambda temperature: {"mpas": hydraulics.viscosity(temperature)},
     "bed pressure loss": lambda velocity, **bed: {"kpa_m": hydraulics.bed_pressure_loss(velocity, 1.0, **bed)},
     "backwash velocity": lambda **bed: {"gpm_ft2": hydraulics.backwash_velocity(**bed) / GPM_FT2},
     "backwash between": _between,
+    "air gap": lambda inch, region: {
+        "gap_inch": rules.air_gap(inch * INCH, rules.rules_for(region)["air-gap"].value) / INCH
+    },
+    "public capacity": lambda kgr_ft3, lb_kgr: {
+        "allowed": rules.public_capacity_allowed(kgr_ft3 * KGR_FT3, kgr_ft3 * lb_kgr * LB_FT3)
+    },
+    "ratings": _ratings,
 }
 
 DEMAND = {

@@ -37,6 +37,8 @@ from core.treatment.column import (
 from core.treatment.exchange import Floats
 from core.treatment.resin import CapacityTable, practice_capacity, trade_capacity
 
+_EXHAUSTED = 0.95  # of the feed's hardness
+_MOST_STRETCHES = 4
 END_POINT = GRAIN / MOLAR_MASS_CACO3 / US_GALLON  # mmol/L, one grain per gallon [NSF44]
 
 
@@ -116,7 +118,7 @@ def run_column(
     before = _contents(column)
     waste = regenerate(column, feed, dose, **regeneration)
     fractions = column.fractions
-    curve = serve(column, feed, _enough(column, feed, resin), steps)
+    curve = _to_exhaustion(column, feed, resin, steps)
     after = _contents(column)
     fed = waste.fed + feed.equivalents() * curve.volume[:, -1]
     left = waste.ions + (curve.ions * curve.volume[:, :1]).sum(-1)
@@ -160,12 +162,22 @@ def _contents(column: Column) -> Floats:
     return (column.resin + column.pore).mean(-1)
 
 
-def _enough(column: Column, water: FeedWater, resin: Resin) -> Floats:
-    """Water that surely exhausts the column: a quarter more than its free capacity can hold. [BV]"""
+def _to_exhaustion(column: Column, water: FeedWater, resin: Resin, steps: int) -> Curve:
+    """Serve until what leaves is as hard as what comes in, or the patience for very salty water is at its end.
+
+    Each stretch is a quarter more than the free capacity can hold, which is enough wherever the front is sharp.
+    """
     feed = water.equivalents()
     full = exhausted(water, cells=1, resin=resin)
     free = full.resin[:2].sum(0)[:, 0] - column.resin[:2].sum(0).mean(-1)
-    return 1.25 * np.maximum(free, 0.02) / (feed[0] + feed[1])
+    stretch = 1.25 * np.maximum(free, 0.02) / (feed[0] + feed[1])
+    curves = []
+    for _ in range(_MOST_STRETCHES):
+        curves.append(serve(column, water, stretch, steps))
+        if np.all(curves[-1].hardness[:, -1] > _EXHAUSTED * 500.0 * (feed[0] + feed[1])):
+            break
+    volume = [curve.volume + number * stretch[:, None] for number, curve in enumerate(curves)]
+    return Curve(np.concatenate(volume, axis=1), np.concatenate([curve.ions for curve in curves], axis=2))
 
 
 def _report(

@@ -133,16 +133,34 @@ def run_out(use: Floats, capacity: float, reserve: ArrayLike, *, longest: float 
 
 def reserve_for(use: Floats, capacity: float, *, allowed: float = 1.0, longest: float = inf) -> float:
     """Smallest reserve that keeps hard water at the tap to the days allowed a year; NaN where none does. [mol]"""
-    tried = np.linspace(0.0, capacity, _TRIED)
-    rare = run_out(use, capacity, tried, longest=longest).hard_days <= allowed
-    if not rare.any():
-        return float("nan")
-    first = int(rare.argmax())
-    if first == 0:
-        return 0.0
-    finer = np.linspace(tried[first - 1], tried[first], _TRIED)
-    rare = run_out(use, capacity, finer, longest=longest).hard_days <= allowed
-    return float(finer[int(rare.argmax())])
+    low, high = 0.0, capacity
+    for _ in range(2):
+        tried = np.linspace(low, high, _TRIED)
+        rare = _hard_days(use, capacity, tried, longest) <= allowed
+        if not rare.any():
+            return float("nan")
+        first = int(rare.argmax())
+        if first == 0:
+            return float(tried[0])
+        low, high = tried[first - 1], tried[first]
+    return float(high)
+
+
+def _hard_days(use: Floats, capacity: float, reserves: Floats, longest: float) -> Floats:
+    """Days a year with hard water for each reserve, one tank: `run_out` without the rest of its figures."""
+    setting = (capacity - reserves)[:, None]
+    spent = np.zeros((len(reserves), use.shape[1]))
+    age, hard = np.zeros(spent.shape, dtype=np.int16), np.zeros(spent.shape, dtype=np.int16)
+    for today in use:
+        spent += today
+        hard += spent > capacity
+        night = spent >= setting
+        if longest < inf:
+            age += 1
+            night |= age >= longest
+            age[night] = 0
+        spent[night] = 0.0
+    return hard.mean(1) * 365.0 / len(use)
 
 
 def compare_reserves(

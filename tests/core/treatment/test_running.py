@@ -101,3 +101,13 @@ def test_two_tanks_hardly_run_out():
     use = draw_use(2.0, **SMALL)
     assert run_out(use, 13.0, 0.4, twin=True).hard_days == 0.0
     assert run_out(use, 1.0, 0.0, twin=True).hard_days > 10.0
+
+
+def test_the_short_count_of_the_search_is_the_full_count():
+    """Looking for a reserve counts the same hard days as following the whole year, with and without a calendar."""
+    use = draw_use(2.0, **SMALL)
+    for longest in (np.inf, 4.0):
+        reserve = reserve_for(use, 13.0, allowed=3.0, longest=longest)
+        assert run_out(use, 13.0, reserve, longest=longest).hard_days <= 3.0
+        if reserve > 0.0:
+            assert run_out(use, 13.0, reserve - 13.0 / 64.0, longest=longest).hard_days > 3.0

@@ -186,6 +186,8 @@ def damage_noticed() -> Iterator[None]:
     """Turn what SQLite says of a file on opening it into DamagedDatabaseError, unless it is about the machine."""
     try:
         yield
+    except UnicodeError as error:  # Python could not even read what SQLite complains of
+        raise DamagedDatabaseError(str(error)) from error
     except sqlite3.DatabaseError as error:
         if error.sqlite_errorcode & 0xFF in NOT_DAMAGE:
             raise
@@ -238,5 +240,5 @@ def _readable_rows(connection: sqlite3.Connection, query: str, kind: type) -> It
         for row in connection.execute(query):
             if all(isinstance(part, kind) for part in row):
                 yield row
-    except sqlite3.Error:
+    except (sqlite3.Error, UnicodeError):
         return

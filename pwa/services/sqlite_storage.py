@@ -224,7 +224,7 @@ def _said() -> Iterator[None]:
     """Turn what SQLite complains of into a sentence."""
     try:
         yield
-    except sqlite3.Error as error:
+    except (sqlite3.Error, UnicodeError) as error:
         if getattr(error, "sqlite_errorcode", 0) & 0xFF == FULL:
             raise StorageFullError from error
         raise StorageError(f"The jobs on this device could not be read or written ({error}). Try again.") from error

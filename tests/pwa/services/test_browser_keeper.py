@@ -141,32 +141,57 @@ def test_damage_to_one_line_costs_that_change_alone(count, which, place, instead
 @given(place=st.integers(0, 40_000), junk=st.binary(min_size=1, max_size=300))
 def test_damage_to_the_image_never_stops_the_app(place, junk):
     """Whatever bytes of the image are damaged, the app opens, lists and loads; what was damaged is kept."""
+    run(damage_scenario(place, junk))
+
+
+async def damage_scenario(place: int, junk: bytes) -> None:
+    """Damage the image of a store with some jobs, and see that a tab can live with it."""
+    store = Store()
+    tab = await opened(store)
+    for number in range(8):
+        await tab.save(f"id{number}", json.dumps({"n": number, "fill": "f" * 2000}), f"Mill {number}")
+    await tab.keeper._checkpoint()
+    await tab.save("since", "{}", "Since")
+    sound = store.image or b""
+    at = place % len(sound)
+    store.image = (sound[:at] + junk + sound[at + len(junk) :])[: len(sound)]
+    broken = store.image
+    try:
+        tab = await opened(store)
+    except NewerDataError:
+        assert 60 - len(junk) <= at <= 63, "only the version number in the file can say that"
+        return
+    rows = await tab.list_jobs(limit=100)
+    assert "since" in {row.id for row in rows}
+    for row in rows:
+        assert (await tab.load(row.id)).name == row.name
+    if tab.notes:
+        assert list(store.aside.values()) == [broken]
+        assert [await tab.read_set_aside(aside.name) for aside in await tab.set_aside()] == [broken]
+    await tab.save("after", "{}", "After")
+    assert "after" in await contents(await opened(store))
+
+
+@pytest.mark.parametrize(("place", "junk"), [(3487, b"\x80")])
+def test_damage_that_once_stopped_the_app(place, junk):
+    """A schema that holds no letters any more: SQLite's own complaint about it cannot be read as a text."""
+    run(damage_scenario(place, junk))
+
+
+def test_a_damaged_letter_stops_nothing():
+    """One letter of a name that is none any more is shown as a sign for that, and all else is as it was."""
 
     async def scenario():
         store = Store()
         tab = await opened(store)
-        for number in range(8):
-            await tab.save(f"id{number}", json.dumps({"n": number, "fill": "f" * 2000}), f"Mill {number}")
+        await tab.save("a", "{}", "Mill Lane", "Lane")
+        await tab.save("b", "{}", "Farm")
         await tab.keeper._checkpoint()
-        await tab.save("since", "{}", "Since")
-        sound = store.image or b""
-        at = place % len(sound)
-        store.image = (sound[:at] + junk + sound[at + len(junk) :])[: len(sound)]
-        broken = store.image
-        try:
-            tab = await opened(store)
-        except NewerDataError:
-            assert 60 - len(junk) <= at <= 63, "only the version number in the file can say that"
-            return
-        rows = await tab.list_jobs(limit=100)
-        assert "since" in {row.id for row in rows}
-        for row in rows:
-            assert (await tab.load(row.id)).name == row.name
-        if tab.notes:
-            assert list(store.aside.values()) == [broken]
-            assert [await tab.read_set_aside(aside.name) for aside in await tab.set_aside()] == [broken]
-        await tab.save("after", "{}", "After")
-        assert "after" in await contents(await opened(store))
+        store.image = (store.image or b"").replace(b"Mill Lane", b"Mill L\xffne")
+        tab = await opened(store)
+        assert [row.name for row in await tab.list_jobs()] == ["Mill L\ufffdne", "Farm"]
+        assert (await tab.load("a")).place == "Lane"
+        assert b"Mill L" in await tab.backup()
 
     run(scenario())
 
@@ -283,6 +308,7 @@ def test_no_room_for_the_image_does_not_hold_up_saving():
         for number in range(8):
             await tab.save(f"id{number}", str(number))
         assert (store.image, len(store.lines), tab.disk.replaced) == (None, 8, 0)
+        assert tab.disk.writes == 8 + 2, "it is tried after 3 and after 6 changes, not after each"
         assert len(await contents(await opened(replace(store, lines=dict(store.lines))))) == 8
         tab.disk.room = None
         await tab.save("more", "1")

@@ -168,8 +168,10 @@ def test_all_of_it_lasts(make_lasting):
         assert await storage.get_setting("units") == '"gpg"'
         await storage.undelete("b")
         await storage.delete("b")
+        clock.turn(days=20)
+        await storage.delete("b")  # deleted it was already: the 30 days run on
         await storage.close()
-        clock.turn(days=30, minutes=1)
+        clock.turn(days=10, minutes=1)
         storage = make_lasting(clock)
         await storage.open()
         with pytest.raises(UnknownJobError):

@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from core.errors import InputError
@@ -12,6 +12,7 @@ HARDNESS = st.floats(0.0, 15.0)
 SHARE = st.floats(0.0, 1.0)
 
 
+@settings(max_examples=50, deadline=None)
 @given(HARDNESS, HARDNESS, SHARE)
 def test_blend_lies_between_its_parts(raw, softened, share):
     """No share makes a blend harder than its hardest or softer than its softest part."""
@@ -20,6 +21,7 @@ def test_blend_lies_between_its_parts(raw, softened, share):
     assert min(raw, softened) - slack <= mixed <= max(raw, softened) + slack
 
 
+@settings(max_examples=50, deadline=None)
 @given(st.floats(1.0, 15.0), st.floats(0.0, 0.9), SHARE)
 def test_share_and_blend_undo_each_other(raw, softened, share):
     """The share computed from a blend is the share it was mixed with."""

@@ -187,7 +187,7 @@ def test_trades_table_lies_where_the_factor_says():
     assert np.all(practice_capacity(ceiling) < high)
 
 
-@settings(max_examples=40)
+@settings(max_examples=40, deadline=None)
 @given(st.lists(st.floats(1e-6, 3.0), min_size=4, max_size=4), st.floats(0.05, 5.0), st.floats(-12.0, 12.0))
 def test_equilibrium_from_any_guess(amounts, water, guess):
     """Whatever the first guess, the resin is full, no ion is lost and the law of exchange holds."""

@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from core.constants import US_GALLON
@@ -81,6 +81,7 @@ def test_unknown_fixture_is_refused():
     assert peak_flow.fixture_units({"bidet": [1, 2]}).tolist() == [2.0, 4.0]
 
 
+@settings(max_examples=50, deadline=None)
 @given(st.floats(1.0, 30_000.0), st.floats(1.0, 30_000.0), st.sampled_from(list(peak_flow.din_building_types())))
 def test_din_peak_never_exceeds_the_sum_and_never_falls(one, other, building):
     """Not all taps run at once, so the peak is at most the sum; above the start of the range it rises with

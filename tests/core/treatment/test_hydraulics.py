@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from core.treatment import hydraulics
@@ -11,6 +11,7 @@ TEMPERATURE = st.floats(0.0, 60.0)
 VELOCITY = st.floats(0.5, 80.0)
 
 
+@settings(max_examples=50, deadline=None)
 @given(TEMPERATURE, TEMPERATURE, VELOCITY)
 def test_colder_water_never_loses_less_pressure(one, other, velocity):
     """Cold water is thicker: at the same flow the bed never costs less pressure."""
@@ -19,6 +20,7 @@ def test_colder_water_never_loses_less_pressure(one, other, velocity):
     assert loss[0] >= loss[1] > 0.0
 
 
+@settings(max_examples=50, deadline=None)
 @given(VELOCITY, VELOCITY, TEMPERATURE)
 def test_more_flow_never_loses_less_pressure(one, other, temperature):
     """Pressure loss rises with the flow, faster than in proportion."""
@@ -27,6 +29,7 @@ def test_more_flow_never_loses_less_pressure(one, other, temperature):
     assert loss[1] * slow >= loss[0] * fast * (1.0 - 1e-12)
 
 
+@settings(max_examples=50, deadline=None)
 @given(TEMPERATURE, st.floats(0.01, 2.0))
 def test_expansion_and_backwash_velocity_undo_each_other(temperature, expansion):
     """The velocity for an expansion gives that expansion."""
@@ -34,6 +37,7 @@ def test_expansion_and_backwash_velocity_undo_each_other(temperature, expansion)
     assert hydraulics.bed_expansion(velocity, temperature) == pytest.approx(expansion, rel=1e-9)
 
 
+@settings(max_examples=50, deadline=None)
 @given(TEMPERATURE, st.floats(0.2, 1.2), st.floats(1100.0, 1400.0))
 def test_terminal_velocity_solves_its_equation(temperature, bead, density):
     """Weight in water equals drag: 18 Re + 2.7 Re^1.687 = Ar, both from their definitions."""

@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from core.errors import InputError
@@ -26,6 +26,7 @@ def test_a_dose_rounded_to_the_gram_still_counts_as_the_end_of_the_table():
     assert resin.trade_capacity(320.9) == resin.trade_table().capacities[-1]
 
 
+@settings(max_examples=50, deadline=None)
 @given(DOSES, DOSES)
 def test_more_salt_never_less_capacity(one, other):
     """The table never falls, and never promises more than the salt can exchange."""

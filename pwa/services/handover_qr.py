@@ -1,0 +1,31 @@
+"""QR codes as pictures, one for each link.
+
+The address of a link is written in bytes, the part behind it in the tighter form for digits and capital letters.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import segno
+
+QUIET = 4  # modules of white round a code, as ISO/IEC 18004 asks
+ERROR = "m"  # 15 % of a code may be unreadable: glare, a scratch
+
+
+@dataclass(frozen=True, slots=True)
+class QrCode:
+    """One code: its modules, True for dark, without the white round it; and the same as a picture."""
+
+    text: str
+    version: int  # 1 to 40; a phone reads up to about 20 off a screen
+    rows: tuple[tuple[bool, ...], ...]
+    svg: str  # black on white in any theme, the white round it included
+
+
+def qr_code(prefix: str, code: str) -> QrCode:
+    """The code for an address and the digits and capital letters that follow it."""
+    made = segno.make([prefix, code], error=ERROR, micro=False, boost_error=False)
+    rows = tuple(tuple(bool(module) for module in row) for row in made.matrix)
+    svg = made.svg_inline(scale=4, border=QUIET, dark="#000000", light="#ffffff", omitsize=True)
+    return QrCode(prefix + code, int(made.version), rows, svg)

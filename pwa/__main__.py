@@ -39,9 +39,7 @@ def _parser() -> argparse.ArgumentParser:
         "--host", default="0.0.0.0", help="0.0.0.0 lets phones in the local network in; 127.0.0.1 does not"
     )
     serving.add_argument("--no-browser", action="store_true", help="do not open the browser")
-    commands.add_parser("build", parents=[building], help="build only").add_argument(
-        "--force", action="store_true"
-    )
+    commands.add_parser("build", parents=[building], help="build only").add_argument("--force", action="store_true")
     commands.add_parser("serve", parents=[building, serving], help="serve what was built")
     commands.add_parser("dev", help="run natively behind flet's own server").add_argument(
         "--port", type=int, default=PORT

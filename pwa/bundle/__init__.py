@@ -65,8 +65,7 @@ await accept_update() -> bool
 await persist_storage() -> bool
     Ask the browser not to clear this site's storage; whether it agreed.
 on_change(callback)
-    Have callback() called whenever offline_state or update_waiting may have changed; hand it over
-    as `pyodide.ffi.create_proxy(callback)`.
+    Have callback() called whenever offline_state or update_waiting may have changed.
 version : str
     Names the sources this app was built from.
 """

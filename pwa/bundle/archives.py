@@ -25,9 +25,7 @@ def zip_folder(folder: Path, out: Path) -> None:
     with zipfile.ZipFile(out, "w", zipfile.ZIP_STORED) as archive:
         for path in sorted(folder.rglob("*")):
             if path.is_file():
-                archive.writestr(
-                    zipfile.ZipInfo(path.relative_to(folder).as_posix(), EPOCH), path.read_bytes()
-                )
+                archive.writestr(zipfile.ZipInfo(path.relative_to(folder).as_posix(), EPOCH), path.read_bytes())
 
 
 def stage(files: dict[str, Path], folder: Path) -> None:

@@ -67,9 +67,7 @@ def _write_fonts(site: Path) -> None:
 
 def engine_revision() -> str:
     """The revision of the Flutter engine the client was built with."""
-    found = re.search(
-        r'"engineRevision":"(\w+)"', (CLIENT / "flutter_bootstrap.js").read_text(encoding="utf-8")
-    )
+    found = re.search(r'"engineRevision":"(\w+)"', (CLIENT / "flutter_bootstrap.js").read_text(encoding="utf-8"))
     if not found:
         raise ClientChangedError("The client does not say which Flutter engine it was built with.")
     return found[1]

@@ -31,9 +31,7 @@ def _cut(source: Path, out: Path, code_points: list[int] | None, features: list[
     font = TTFont(source)
     font.flavor = None
     dropped = ["hdmx", "FFTM"] if code_points is None else ["GSUB", "GPOS", "GDEF", "kern", "FFTM"]
-    options = subset.Options(
-        hinting=False, layout_features=features, notdef_outline=True, recalc_timestamp=False
-    )
+    options = subset.Options(hinting=False, layout_features=features, notdef_outline=True, recalc_timestamp=False)
     options.drop_tables += dropped
     cutter = subset.Subsetter(options)
     cutter.populate(unicodes=font.getBestCmap() if code_points is None else code_points)

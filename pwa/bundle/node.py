@@ -29,9 +29,7 @@ def _wheel_node() -> Path | None:
 def _major_version(program: str) -> int:
     """The major version a Node program reports; 0 where it cannot run."""
     try:
-        answer = subprocess.run(
-            [program, "--version"], capture_output=True, text=True, timeout=30, check=True
-        )
+        answer = subprocess.run([program, "--version"], capture_output=True, text=True, timeout=30, check=True)
         return int(answer.stdout.strip().lstrip("v").split(".")[0])
     except (OSError, ValueError, subprocess.SubprocessError):
         return 0

@@ -57,9 +57,7 @@ def from_carrier() -> bytes:
     from remotezip import RemoteZip
 
     with tempfile.TemporaryDirectory() as nowhere:
-        question = (
-            "install --dry-run --quiet --no-deps --ignore-installed --only-binary=:all: --python-version 3.12"
-        )
+        question = "install --dry-run --quiet --no-deps --ignore-installed --only-binary=:all: --python-version 3.12"
         command = [
             sys.executable,
             "-m",
@@ -71,9 +69,7 @@ def from_carrier() -> bytes:
             "-",
             CARRIER,
         ]
-        report = subprocess.run(
-            command, capture_output=True, text=True, timeout=4 * TIMEOUT, check=True
-        ).stdout
+        report = subprocess.run(command, capture_output=True, text=True, timeout=4 * TIMEOUT, check=True).stdout
     address = json.loads(report)["install"][0]["download_info"]["url"]
     with RemoteZip(address) as archive:
         return archive.read(CARRIER_MEMBER)

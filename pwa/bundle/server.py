@@ -54,9 +54,7 @@ class SiteHandler(http.server.BaseHTTPRequestHandler):
     def _answer(self, *, with_body: bool) -> None:
         path = self.server.file_for(self.path)
         if path is None:
-            self._send(
-                HTTPStatus.NOT_FOUND, {"Content-Type": TYPES[".txt"]}, b"Not found.\n" if with_body else b""
-            )
+            self._send(HTTPStatus.NOT_FOUND, {"Content-Type": TYPES[".txt"]}, b"Not found.\n" if with_body else b"")
             return
         status = path.stat()
         headers = {
@@ -124,9 +122,7 @@ def lan_address() -> str | None:
     """This machine's address in the local network, or None; nothing is sent to find it."""
     with socket.socket(socket.AF_INET, socket.SOCK_DGRAM) as probe:
         try:
-            probe.connect(
-                ("192.0.2.1", 9)
-            )  # an address reserved for documentation: it only picks the network card
+            probe.connect(("192.0.2.1", 9))  # an address reserved for documentation: it only picks the network card
         except OSError:
             return None
         address = probe.getsockname()[0]

@@ -48,7 +48,5 @@ def make_snapshot(library_zip: Path, library_file: str, node: str) -> Snapshot:
         run_script(node, "snapshot.mjs", library_zip, library_file, script, unfinished)
         unfinished.replace(out)
     content = out.read_bytes()
-    header = int.from_bytes(
-        content[4:8], "little"
-    )  # the file begins with its magic word and the size of its header
+    header = int.from_bytes(content[4:8], "little")  # the file begins with its magic word and the size of its header
     return Snapshot(content, len(content) - header)

@@ -34,9 +34,7 @@ def library_files() -> dict[str, Path]:
         installed = distribution(name)
         for entry in installed.files or ():
             place = entry.as_posix()
-            wanted = (
-                entry.suffix in LIBRARY_SUFFIXES and ".dist-info/" not in place and not place.startswith("..")
-            )
+            wanted = entry.suffix in LIBRARY_SUFFIXES and ".dist-info/" not in place and not place.startswith("..")
             if wanted and not place.startswith(LIBRARY_LEAVES_OUT):
                 files[place] = Path(str(installed.locate_file(entry)))
     return dict(sorted(files.items()))

@@ -4,17 +4,15 @@ import importlib
 import random
 import runpy
 import sys
-import time
 
 for archive in ("__LIBRARY_FILE__", "__APP_FILE__"):
     if archive not in sys.path:
         sys.path.insert(0, archive)
 importlib.invalidate_caches()
 
-# A memory image carries the random state and the time zone of the machine that made it.
+# A memory image carries the random state of the machine that made it. (Its time.timezone and time.tzname too, which
+# cannot be set again; datetime and time.localtime ask the browser each time.)
 random.seed()
-if hasattr(time, "tzset"):
-    time.tzset()
 
 import flet.messaging.pyodide_connection as connection  # noqa: E402
 import flet_js  # noqa: E402

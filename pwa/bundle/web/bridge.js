@@ -7,6 +7,7 @@
   let toFlutter = null;
   let resolveReady, rejectReady;
   const ready = new Promise((resolve, reject) => { resolveReady = resolve; rejectReady = reject; });
+  ready.catch(() => {}); // the splash has said it
 
   const fail = (text) => {
     console.error("Python did not start:", text);

@@ -39,10 +39,32 @@ const ask = (name, value) => new Promise((resolve, reject) => {
 const stage = (name) => self.postMessage({ kind: "stage", name });
 
 // ---- files ----------------------------------------------------------------------------------------------------------
+const plainFetch = self.fetch.bind(self);
+
+async function fetched(address, options) {
+  const name = new URL(address.url ?? address, HERE).href.replace(HERE, "");
+  const answer = await plainFetch(address, options).catch((error) => {
+    throw new Error(`${name} could not be fetched (${error.message}).`);
+  });
+  if (!answer.ok) throw new Error(`${name} could not be fetched: the server answered ${answer.status}.`);
+  return answer;
+}
+
+// When one of its files does not arrive, Pyodide only warns, and never ends. So its fetches are watched while it starts.
+function watchingFetches() {
+  const failure = new Promise((_, reject) => {
+    self.fetch = (...request) => fetched(...request).catch((error) => {
+      reject(error);
+      throw error;
+    });
+  });
+  failure.catch(() => {}); // it may come when nobody waits any more
+  return { failure, end: () => { self.fetch = plainFetch; } };
+}
+
 // Packs are gzipped here, not by the server: not every host compresses them.
 async function unpacked(path) {
-  const answer = await fetch(HERE + path);
-  if (!answer.ok) throw new Error(`${path} could not be fetched: the server answered ${answer.status}.`);
+  const answer = await fetched(HERE + path);
   const stream = answer.body.pipeThrough(new DecompressionStream("gzip"));
   return new Uint8Array(await new Response(stream).arrayBuffer());
 }
@@ -102,7 +124,7 @@ const host = {
   },
   offline_state: () => state.offline,
   update_waiting: () => state.update,
-  on_change: (listener) => { listeners.push(listener); },
+  on_change: (listener) => { listeners.push(listener.copy()); }, // the argument itself ends with this call
   accept_update: () => ask("accept-update"),
   persist_storage: () => ask("persist-storage"),
 };
@@ -133,4 +155,5 @@ async function main() {
   self.postMessage({ kind: "ready" });
 }
 
-main().catch((error) => self.postMessage({ kind: "failed", text: String(error?.message ?? error) }));
+const fetches = watchingFetches();
+Promise.race([main(), fetches.failure]).finally(fetches.end).catch((error) => self.postMessage({ kind: "failed", text: String(error?.message ?? error) }));

@@ -40,6 +40,7 @@ Floats = NDArray[np.float64]
 
 AT_THE_END = 1e-7  # of the demand: a flow this near to the end of its range is at it
 BINDING = 1e-7  # of a limit: a value this near to it is held by it
+NEAR = 1e-3  # the same for limits of the chemistry, which are approached in steps, in units of their size
 EASED = 0.10  # by how much a limit is eased to say what that would save
 NUDGE = 1e-6  # the same, to find a price where several limits meet in one corner
 
@@ -302,16 +303,15 @@ def _limit_states(
         )
     for limit in case.chemical:
         value = nan if judged is None else judged.value(limit)
-        states.append(
-            LimitState(limit, value, keeps(value, limit), margin(value, limit), _holds(value, limit), nan, nan, nan)
-        )
+        holds = _holds(value, limit, NEAR * chemistry.SIZE[limit.parameter])
+        states.append(LimitState(limit, value, keeps(value, limit), margin(value, limit), holds, nan, nan, nan))
     return tuple(states)
 
 
-def _holds(value: float, limit: Limit) -> str:
+def _holds(value: float, limit: Limit, near: float = 0.0) -> str:
     for side in ("low", "high"):
         at = getattr(limit, side)
-        if isfinite(at) and abs(value - at) <= BINDING * max(abs(at), 1e-3):
+        if isfinite(at) and abs(value - at) <= max(BINDING * max(abs(at), 1e-3), near):
             return side
     return ""
 

@@ -144,12 +144,33 @@ def find(cols: Columns, **more: Any) -> State:
     return _marked(cols, solve(problem))
 
 
-def settle(cols: Columns) -> State | None:
-    """Make sure alkalinity and dissolved carbon are known; the state found on the way, if pH was one of the two."""
+def settle(cols: Columns, solution: Solution) -> State | None:
+    """Make sure alkalinity and dissolved carbon are known, and give the state found on the way if it is theirs.
+
+    What a water settles to is found once and kept with it, as nothing about a Solution can change.
+    """
     if cols.ph is None:
         return None
-    by_alkalinity = cols.alkalinity is not None
+    own, state = _settled(solution, cols.data)
+    same = cols.shape == own.shape
+    for name in ("alkalinity", "dic", "why"):
+        known = getattr(own, name)
+        setattr(cols, name, known.copy() if same else flat(known.reshape(own.shape), cols.shape).astype(known.dtype))
+    return state if same else None
+
+
+def _settled(solution: Solution, data: str) -> tuple[Columns, State]:
+    kept = solution.__dict__.setdefault("_settled", {})
+    if data not in kept:
+        cols = columns(solution, data)
+        kept[data] = cols, _at_known_ph(cols)
+    return kept[data]
+
+
+def _at_known_ph(cols: Columns) -> State:
+    """Equilibrium of waters whose pH is known with alkalinity or carbon; fills in whichever of the two is not."""
     sulfur = np.maximum(cols.sulfur, NOTHING)
+    by_alkalinity = cols.alkalinity is not None
     known = 0.5 * cols.alkalinity if cols.alkalinity is not None else np.maximum(cols.dic, NOTHING)
     problem = Problem(
         cols.model(),
@@ -177,10 +198,10 @@ def _admit_without_carbon(cols: Columns, state: State) -> None:
     told = cols.alkalinity[rows]
     part.alkalinity, part.dic = None, np.zeros(rows.size)
     part.why[:] = OK
-    found = settle(part)
+    found = _at_known_ph(part)
     close = np.abs(part.alkalinity - told) <= READ_TO + READ_TO_SHARE * np.abs(told)
     admitted = close & (part.why == OK)
-    if found is not None and admitted.any():
+    if admitted.any():
         state.put(rows[admitted], found, admitted)
         cols.why[rows[admitted]] = OK
 
@@ -216,7 +237,7 @@ def conserved(solution: Solution, data: str) -> tuple[Value, Value, str | NDArra
     if solution.alkalinity is not None and solution.dic is not None:
         return solution.alkalinity, solution.dic, solution.why
     cols = columns(solution, data)
-    settle(cols)
+    settle(cols, solution)
     alkalinity, dic = (with_nan(cols, part / MILLI) for part in (cols.alkalinity, cols.dic) if part is not None)
     return cols.out(alkalinity), cols.out(dic), cols.reasons()
 

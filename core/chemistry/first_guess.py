@@ -14,7 +14,7 @@ from core.chemistry.problem import Contact, Problem
 
 Floats = NDArray[np.float64]
 
-SCAN = np.exp(-LN10 * np.arange(-1.0, 15.6, 0.5))[:, None]  # activity of H+, falling
+SCAN = np.exp(-LN10 * np.arange(-1.0, 15.6, 1.0))[:, None]  # activity of H+, falling
 LOWEST = 1e-12  # activity of CO3-2 to start from where the balance leaves none
 
 

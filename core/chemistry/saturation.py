@@ -22,7 +22,7 @@ from core.chemistry.columns import (
     with_nan,
 )
 from core.chemistry.equilibrium import State
-from core.chemistry.model import S
+from core.chemistry.model import S, product
 from core.chemistry.problem import CLOSED, CLOSED_TIED, OPEN, OPEN_TIED, Contact
 from core.chemistry.reactions import SOLIDS
 from core.chemistry.solution import Solution, Value
@@ -83,7 +83,7 @@ def to_saturation(
     named = _named(solids)
     gas = None if p_co2 is None else pressure(p_co2)
     cols = columns(solution, data and check_data(data), *(() if gas is None else (gas,)))
-    settled = settle(cols)
+    settled = settle(cols, solution)
     open_to = None if gas is None else ln_gas(cols, gas)
     if may_dissolve:
         state, amounts = _in_contact(cols, named, open_to)
@@ -129,7 +129,7 @@ def _in_contact(cols: Columns, solids: tuple[str, ...], open_to: Floats | None) 
 
 def _amounts(cols: Columns, state: State, solids: tuple[str, ...], *, tied: bool) -> dict[str, Floats]:
     model = cols.model()
-    left = model.belongs @ state.molality[model.base :]
+    left = product(model.belongs, state.molality[model.base :])
     lost = dict(zip(cols.components, cols.totals - left, strict=True))
     amounts: dict[str, Floats] = {}
     for solid in solids:
@@ -147,7 +147,7 @@ def _oversaturated(
     cols: Columns, solids: tuple[str, ...], open_to: Floats | None, start: State | None
 ) -> tuple[State, dict[str, Floats]]:
     """Only solids that the water is oversaturated with form; found by trying, a few rounds, which ones do."""
-    state = start or find(cols, closure=CLOSED if open_to is None else OPEN, ln_gas=open_to)
+    state = start.copy() if start else find(cols, closure=CLOSED if open_to is None else OPEN, ln_gas=open_to)
     forms = np.array([_index(cols, state, solid) > HAIR for solid in solids])
     amounts = {solid: np.zeros_like(cols.temp_c) for solid in solids}
     pending = np.any(forms, axis=0) & (cols.why == OK)

@@ -223,7 +223,7 @@ def speciate(solution: Solution, *, p_co2: ArrayLike | None = None, data: str | 
     """
     gas = None if p_co2 is None else pressure(p_co2)
     cols = columns(solution, data and check_data(data), *(() if gas is None else (gas,)))
-    state = settle(cols)
+    state = settle(cols, solution)
     if gas is not None:
         state = find_open(cols, gas)
     elif state is None:
@@ -238,7 +238,7 @@ def at_temperature(solution: Solution, temp_c: ArrayLike, *, data: str | None = 
     """
     temp = within("temp_c", number("temp_c", temp_c), 0.0, 100.0, "°C")
     cols = columns(solution, data and check_data(data), temp)
-    settle(cols)
+    settle(cols, solution)
     warm = flat(temp, cols.shape)
     unknown = np.isnan(warm)
     cols.temp_c = np.where(unknown, cols.temp_c, warm)

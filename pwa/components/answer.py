@@ -131,9 +131,9 @@ def Figure(answer: Answer, display: Display) -> ft.Control:
 def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Control:
     """A part's headline: figure, words, line; or what is missing for it."""
     headline = part.headline
+    lacks = [ToneLine("missing", missing.text) for missing in part.missing]
     if headline is None:
-        lacks = [missing.text for missing in part.missing] or ["Nothing to answer yet."]
-        return ft.Column(spacing=4, controls=[ToneLine("missing", text) for text in lacks])
+        return ft.Column(spacing=4, controls=lacks or [ToneLine("missing", "Nothing to answer yet.")])
     words = display.say(headline.words)
     tone = TONES[headline.tone]
     controls: list[ft.Control] = [
@@ -147,7 +147,7 @@ def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Contro
     drawn = AnswerLine(headline, display) if line else None
     if drawn is not None:
         controls.append(drawn)
-    return ft.Column(spacing=2, controls=controls)
+    return ft.Column(spacing=2, controls=[*controls, *lacks])
 
 
 def spoken(part: Part, display: Display) -> str:

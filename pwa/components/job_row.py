@@ -7,6 +7,7 @@ from typing import Any
 import flet as ft
 
 from pwa import theme
+from pwa.components.words import Tappable
 from pwa.services.storage import JobRow
 
 
@@ -22,34 +23,36 @@ def JobCard(row: JobRow, workspace: Any, key: str) -> ft.Control:
     def open_(event: ft.ControlEvent) -> None:
         ft.context.page.navigate(f"/job/{row.id}")
 
+    words: list[ft.Control] = [ft.Text(named(row.name), theme_style=ft.TextThemeStyle.TITLE_MEDIUM)]
+    if row.place:
+        words.append(ft.Text(row.place, color=ft.Colors.ON_SURFACE_VARIANT))
+    if row.summary:
+        words.append(ft.Text(row.summary))
+    menu = ft.PopupMenuButton(
+        icon=ft.Icons.MORE_VERT,
+        tooltip=f"More for {named(row.name)}",
+        items=[
+            ft.PopupMenuItem(content="Save as a file", on_click=save),
+            ft.PopupMenuItem(content="Delete", on_click=delete),
+        ],
+    )
     return ft.Container(
         key=key,
-        ink=True,
-        on_click=open_,
         bgcolor=ft.Colors.SURFACE,
         border_radius=theme.RADIUS,
         border=ft.Border.all(1, ft.Colors.OUTLINE_VARIANT),
-        padding=ft.Padding.only(left=theme.PAD, top=12, bottom=12, right=4),
         content=ft.Row(
+            spacing=0,
             vertical_alignment=ft.CrossAxisAlignment.START,
             controls=[
-                ft.Column(
+                Tappable(
+                    ". ".join(filter(None, (named(row.name), row.place, row.summary))),
+                    open_,
+                    ft.Column(spacing=2, controls=words),
                     expand=True,
-                    spacing=2,
-                    controls=[
-                        ft.Text(named(row.name), theme_style=ft.TextThemeStyle.TITLE_MEDIUM),
-                        *([ft.Text(row.place, color=ft.Colors.ON_SURFACE_VARIANT)] if row.place else []),
-                        *([ft.Text(row.summary)] if row.summary else []),
-                    ],
+                    padding=ft.Padding.only(left=theme.PAD, top=12, bottom=12),
                 ),
-                ft.PopupMenuButton(
-                    icon=ft.Icons.MORE_VERT,
-                    tooltip=f"More for {named(row.name)}",
-                    items=[
-                        ft.PopupMenuItem(content="Save as a file", on_click=save),
-                        ft.PopupMenuItem(content="Delete", on_click=delete),
-                    ],
-                ),
+                ft.Semantics(container=True, content=menu),
             ],
         ),
     )

@@ -34,7 +34,7 @@ def SectionView(workspace: Workspace, standing: Standing, preferences: Preferenc
     def panes(sheet: Sheet) -> ft.Control:
         if standing.wide:
             return _sheet(workspace, standing, preferences, sheet, section)
-        return SectionPane(sheet, section, workspace, preferences)
+        return SectionPane(sheet, section, workspace, preferences, key=section)
 
     title = None if standing.wide else SECTIONS[section]
     return _view(f"/job/{job_id}/{section}", sheet, panes, title)

@@ -8,7 +8,7 @@ from dataclasses import dataclass, field
 
 from core.job.answers import Amount, Phrase
 from core.units import convert
-from pwa.text import format_number, format_quantity
+from pwa.text import GAP, format_number, format_quantity
 
 # The unit of a quantity, or of a role (a kind of a quantity: resin among volumes), in each set. What is not named
 # keeps the unit it was computed in.
@@ -68,6 +68,7 @@ def unit_set_for(chosen: str, hardness_unit: str = "") -> str:
     return "us" if hardness_unit == "gpg" else "metric"
 
 
+_WHOLE = ("°C", "°F")  # read in whole degrees, shown so where they are whole
 _SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
 _FORMULA = re.compile(r"(?<=[A-Za-z)])\d+")
 
@@ -106,9 +107,11 @@ class Display:
         if not unit:
             return format_number(value, decimal=self.decimal)
         if unit == "day":
-            number = format_number(value, unit=unit, decimal=self.decimal)
-            number = number.removesuffix(f"{self.decimal}0")
+            number = format_number(value, unit=unit, decimal=self.decimal).removesuffix(f"{self.decimal}0")
             return f"{number} {'day' if number == '1' else 'days'}"
+        if unit in _WHOLE and value == round(value):
+            value = round(value)
+            return f"{value:d}{GAP}{unit}"
         return unit_shown(format_quantity(value, unit, self.decimal))
 
     def say(self, phrase: Phrase) -> str:

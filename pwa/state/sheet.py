@@ -77,12 +77,16 @@ class Heading:
 class Sheet:
     """The open job and its verbs."""
 
-    def __init__(self, job: Job, changed: Callable[[Sheet, str], None], units: Mapping[str, str]) -> None:
-        """`units` names the unit of a role or a quantity that this user usually reads it in."""
+    def __init__(
+        self, job: Job, changed: Callable[[Sheet, str], None], units: Callable[[str], Mapping[str, str]]
+    ) -> None:
+        """`units` gives the unit of each role and quantity that goes with a hardness read in a unit."""
         self.job = job
-        self._changed = changed
+        self._changed, self._units = changed, units
         self.heading = Heading(job.name, job.place, job.notes)
-        self.fields = {key: _field_state(FIELDS[key], job.entries.get(key), units) for key in FIELDS}
+        self.fields = {
+            key: _field_state(FIELDS[key], job.entries.get(key), units(self.hardness_unit)) for key in FIELDS
+        }
         self.choices = {
             key: ChoiceState(key, job.choices.get(key, choice.default), key in job.choices)
             for key, choice in CHOICES.items()
@@ -145,7 +149,17 @@ class Sheet:
         except UnitError as error:
             state.refused = str(error)
         entry = Entry(value, state.unit, state.source, typed=state.typed)
+        if key == "water.hardness":
+            self._follow(state.unit)
         self._put(self.job.with_entry(key, entry), FIELDS[key].section)
+
+    def _follow(self, hardness_unit: str) -> None:
+        """Offer the entries that are still empty in the units that go with the hardness as read."""
+        units = self._units(hardness_unit)
+        for state in self.fields.values():
+            unit = _usual_unit(FIELDS[state.key], units)
+            if not state.typed.strip() and state.unit != unit:
+                state.unit = unit
 
     def _put(self, job: Job, section: str) -> None:
         self.job = job

@@ -9,7 +9,7 @@ from __future__ import annotations
 import asyncio
 import logging
 import uuid
-from collections.abc import Awaitable, Callable
+from collections.abc import Awaitable, Callable, Mapping
 from dataclasses import dataclass, field, replace
 from typing import Any
 
@@ -192,9 +192,7 @@ class Workspace:
         return self.sheets[job_id]
 
     def _open_sheet(self, job: Job) -> Sheet:
-        hardness = job.entries.get("water.hardness")
-        chosen = unit_set_for(self.preferences.settings.unit_set, hardness.unit if hardness else "")
-        sheet = Sheet(job, self._changed, UNIT_SETS[chosen])
+        sheet = Sheet(job, self._changed, self._units)
         self._assess_sheet(sheet, SECTIONS)
         return sheet
 
@@ -242,6 +240,10 @@ class Workspace:
         unit = sheet.hardness_unit if sheet is not None else ""
         own = {"hardness": unit} if unit else {}
         return Display(unit_set_for(settings.unit_set, unit), settings.decimal, SCALES[settings.text], own)
+
+    def _units(self, hardness_unit: str) -> Mapping[str, str]:
+        own = {"hardness": hardness_unit} if hardness_unit else {}
+        return UNIT_SETS[unit_set_for(self.preferences.settings.unit_set, hardness_unit)] | own
 
     async def _add(self, job: Job) -> str:
         sheet = self._open_sheet(job)

@@ -250,7 +250,7 @@ def resolved(solution: Solution) -> Solution:
 
 def carbon(state: State) -> Floats:
     """All dissolved carbonate and CO2; a plain zero where there is none. [mol/kg]"""
-    return np.maximum(state.sums[C] - NOTHING, 0.0)
+    return np.where(state.sums[C] < 1e5 * NOTHING, 0.0, state.sums[C])
 
 
 def with_nan(cols: Columns, flat_values: Floats) -> Floats:

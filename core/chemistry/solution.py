@@ -121,7 +121,7 @@ def solved(**values: Any) -> Solution:
 
 def number(field: str, value: ArrayLike) -> Value:
     """A number or an array of numbers, or InputError in a sentence. A scalar comes back as a float."""
-    if isinstance(value, float):
+    if type(value) is float:
         return value
     try:
         array = np.array(value, dtype=float)

@@ -14,7 +14,7 @@ import zipfile
 from pathlib import Path
 
 from pwa.bundle.node import run_script
-from pwa.bundle.places import PYODIDE, WEB, cache
+from pwa.bundle.places import PYODIDE, WEB, cache, made_once
 from pwa.bundle.sources import digest_of
 
 EPOCH = (1980, 1, 1, 0, 0, 0)  # the earliest date a zip can hold: archives must not depend on the day
@@ -44,15 +44,16 @@ def python_archive(name: str, files: dict[str, Path], node: str | None) -> Path:
     scripts = [("compile.mjs", WEB / "compile.mjs"), ("pyodide", PYODIDE / "pyodide.asm.wasm")]
     key = digest_of([*files.items(), *scripts])[:16]
     out = cache("archives") / f"{name}-{key}-{'pyc' if node else 'py'}.zip"
-    if not out.exists():
+
+    def make(target: Path) -> None:
         with tempfile.TemporaryDirectory() as work:
-            staged = Path(work) / "staged"
-            stage(files, staged)
+            folder = Path(work)
+            stage(files, folder)
             if node:
-                run_script(node, "compile.mjs", staged)
-            zip_folder(staged, Path(work) / "archive.zip")
-            shutil.move(Path(work) / "archive.zip", out)
-    return out
+                run_script(node, "compile.mjs", folder)
+            zip_folder(folder, target)
+
+    return made_once(out, make)
 
 
 def pack(content: bytes, name: str, folder: Path) -> str:
@@ -60,9 +61,10 @@ def pack(content: bytes, name: str, folder: Path) -> str:
 
     The hash in the name keeps an old page from being handed the parts of a new version.
     """
-    packed = cache("packs") / f"{hashlib.sha256(content).hexdigest()}.gz"
-    if not packed.exists():
-        packed.write_bytes(gzip.compress(content, 9, mtime=0))
+    packed = made_once(
+        cache("packs") / f"{hashlib.sha256(content).hexdigest()}.gz",
+        lambda target: target.write_bytes(gzip.compress(content, 9, mtime=0)),
+    )
     file_name = f"{name}.{packed.stem[:12]}.pack"
     folder.mkdir(parents=True, exist_ok=True)
     shutil.copyfile(packed, folder / file_name)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import shutil
+import tempfile
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
@@ -15,11 +16,12 @@ from pwa.bundle.page import write_page, write_service_worker, write_worker
 from pwa.bundle.places import DEFAULT_SITE, Choices
 from pwa.bundle.revisions import kept_files, revision_of, sizes, write_compressed
 from pwa.bundle.snapshot import Snapshot, make_snapshot
-from pwa.bundle.sources import app_files, build_digest, library_files
+from pwa.bundle.sources import PDF_LIBRARIES, app_files, build_digest, library_files
 
 PYTHON = "python"  # the folder of the packs
 LIBRARY_FILE = "/library.zip"  # where the archives lie in the browser's file system
 APP_FILE = "/app.zip"
+PDF_FILE = "/pdf.zip"
 SITE_PACKAGES = "/lib/python3.14/site-packages"
 RECORD = "build.json"
 
@@ -52,9 +54,10 @@ def _try_snapshot(library: Path, node: str, say: Say) -> Snapshot | None:
 
 def _write_python(site: Path, node: str | None, version: str, say: Say) -> None:
     """Write the Python side: archives, memory image, numpy, and the worker that knows them."""
-    say("Packing Python: flet, the app, numpy.")
+    say("Packing Python: flet, the app, numpy, what draws the PDF.")
     library = archives.python_archive("library", library_files(), node)
     app = archives.python_archive("app", app_files(), node)
+    pdf = archives.python_archive("pdf", library_files(PDF_LIBRARIES), node)
     numpy = numpy_wheel.numpy_archive(node, say)
     folder = site / PYTHON
     config: dict[str, object] = {
@@ -63,8 +66,10 @@ def _write_python(site: Path, node: str | None, version: str, say: Say) -> None:
         "app": f"{PYTHON}/{archives.pack(app.read_bytes(), 'app', folder)}",
         "numpy": f"{PYTHON}/{archives.pack(numpy.read_bytes(), 'numpy', folder)}",
         "numpyVersion": numpy_wheel.VERSION,
+        "pdf": f"{PYTHON}/{archives.pack(pdf.read_bytes(), 'pdf', folder)}",
         "libraryFile": LIBRARY_FILE,
         "appFile": APP_FILE,
+        "pdfFile": PDF_FILE,
         "sitePackages": SITE_PACKAGES,
         "lock": pyodide_lock(),
         "snapshot": None,
@@ -103,9 +108,28 @@ def build(
         return Built(site, made=False)
 
     say(f"Building the app in {site}.")
-    work = site.with_name(f"{site.name}.new")
-    shutil.rmtree(work, ignore_errors=True)
-    work.mkdir(parents=True)
+    site.parent.mkdir(parents=True, exist_ok=True)
+    work = Path(tempfile.mkdtemp(dir=site.parent, prefix=f"{site.name}.new-"))
+    try:
+        _write_site(work, choices, node, digest, say)
+        _put_in_place(work, site)
+    finally:
+        shutil.rmtree(work, ignore_errors=True)
+    return Built(site, made=True)
+
+
+def _put_in_place(work: Path, site: Path) -> None:
+    """Change the former site for the new one, leaving next to no time between them."""
+    work.chmod(0o755)
+    former = Path(tempfile.mkdtemp(dir=site.parent, prefix=f"{site.name}.old-"))
+    if site.exists():
+        site.rename(former / "site")
+    work.rename(site)
+    shutil.rmtree(former)
+
+
+def _write_site(work: Path, choices: Choices, node: str | None, digest: str, say: Say) -> None:
+    """Write all files of the site."""
     say("Taking the client and Pyodide from flet-web.")
     write_client(work)
     _write_python(work, node, digest[:12], say)
@@ -118,7 +142,4 @@ def build(
     write_service_worker(work, files, revision_of(files))
     record = {"digest": digest, "revision": revision_of(files), "kept": total.kept, "fetched": total.fetched}
     (work / RECORD).write_text(json.dumps(record, indent=2), encoding="utf-8")
-    shutil.rmtree(site, ignore_errors=True)
-    work.rename(site)
     say(f"Done. A phone fetches {_megabytes(total.fetched)} once and keeps {_megabytes(total.kept)}.")
-    return Built(site, made=True)

@@ -13,14 +13,9 @@ ACCENT = "#0B5D66"
 
 # The splash stands on the ground the app will draw, so that nothing flashes when the app takes over.
 COLOURS = {
-    "CHALK": LIGHT.ground,
-    "SLATE": DARK.ground,
-    "INK": LIGHT.ink,
-    "INK_ON_DARK": DARK.ink,
-    "ACCENT": LIGHT.accent,
-    "ON_ACCENT": LIGHT.on_accent,
-    "ACCENT_ON_DARK": DARK.accent,
-    "ON_ACCENT_ON_DARK": DARK.on_accent,
+    f"{theme}_{use.upper()}": getattr(colours, use)
+    for theme, colours in (("LIGHT", LIGHT), ("DARK", DARK))
+    for use in ("ground", "ink", "accent", "on_accent")
 }
 
 # A tap as a T, and under it a drop with a level across it: the water is measured. In a square of 96.

@@ -15,11 +15,13 @@ import tempfile
 import urllib.request
 import zipfile
 from collections.abc import Callable
+from functools import partial
 from pathlib import Path
 
 from pwa.bundle.archives import zip_folder
 from pwa.bundle.node import run_script
-from pwa.bundle.places import cache
+from pwa.bundle.places import WEB, cache, made_once
+from pwa.bundle.sources import digest_of
 
 VERSION = "2.4.3"
 FILE = f"numpy-{VERSION}-cp314-cp314-pyemscripten_2026_0_wasm32.whl"
@@ -29,8 +31,11 @@ CARRIER = "open-webui==0.12.4"
 CARRIER_MEMBER = f"open_webui/frontend/pyodide/{FILE}"
 TIMEOUT = 60  # s
 
-# What the app never uses of numpy: its tests, its build tools, headers, type stubs, and the Fortran wrapper.
+# What the app never uses of numpy: tests, build tools, headers, type stubs, and whole subjects. A test keeps the
+# sources to what is left.
+SUBJECTS_LEFT_OUT = ("f2py", "fft", "ma", "polynomial", "testing")
 LEAVES_OUT = (
+    *(f"/numpy/{subject}/" for subject in SUBJECTS_LEFT_OUT),
     "/tests/",
     "/f2py/",
     "/include/",
@@ -86,6 +91,7 @@ def wheel(say: Callable[[str], None]) -> Path:
     kept = cache("wheels") / FILE
     if kept.exists() and hashlib.sha256(kept.read_bytes()).hexdigest() == SHA256:
         return kept
+    kept.unlink(missing_ok=True)
     tried = []
     for place, fetch in SOURCES:
         say(f"Fetching numpy {VERSION} for the browser (3 MB) from {place}.")
@@ -95,8 +101,7 @@ def wheel(say: Callable[[str], None]) -> Path:
             tried.append(f"{place}: {error}")
             continue
         if hashlib.sha256(content).hexdigest() == SHA256:
-            kept.write_bytes(content)
-            return kept
+            return made_once(kept, partial(Path.write_bytes, data=content))
         tried.append(f"{place}: the file has another hash than expected")
     raise NumpyMissingError(
         f"numpy for the browser could not be had. Tried: {'; '.join(tried)}. "
@@ -111,16 +116,14 @@ def _needed(place: str) -> bool:
 
 def numpy_archive(node: str | None, say: Callable[[str], None]) -> Path:
     """The zip the app unpacks: the parts of the wheel it uses, as bytecode where Node can make it."""
-    out = cache("archives") / f"numpy-{VERSION}-{SHA256[:12]}-{'pyc' if node else 'py'}.zip"
-    if not out.exists():
-        source = wheel(say)
-        with tempfile.TemporaryDirectory() as work:
-            folder = Path(work) / "numpy"
-            with zipfile.ZipFile(source) as archive:
-                archive.extractall(folder, [name for name in archive.namelist() if _needed(name)])
+    key = digest_of((path.name, path) for path in (Path(__file__), WEB / "compile.mjs"))[:16]  # names wheel and choice
+    out = cache("archives") / f"numpy-{key}-{'pyc' if node else 'py'}.zip"
+
+    def make(target: Path) -> None:
+        with tempfile.TemporaryDirectory() as work, zipfile.ZipFile(wheel(say)) as source:
+            source.extractall(work, [name for name in source.namelist() if _needed(name)])
             if node:
-                run_script(node, "compile.mjs", folder)
-            unfinished = out.with_suffix(".new")
-            zip_folder(folder, unfinished)
-            unfinished.replace(out)
-    return out
+                run_script(node, "compile.mjs", work)
+            zip_folder(Path(work), target)
+
+    return made_once(out, make)

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import os
+import tempfile
+from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -21,6 +23,16 @@ def cache(*parts: str) -> Path:
     folder = Path(os.environ.get("TAPWRIGHT_CACHE") or ROOT / ".cache").joinpath(*parts)
     folder.mkdir(parents=True, exist_ok=True)
     return folder
+
+
+def made_once(path: Path, make: Callable[[Path], None]) -> Path:
+    """A cached file: `make(target)` writes it if it is not there; whole or not at all, also with two builds at once."""
+    if not path.exists():
+        with tempfile.TemporaryDirectory(dir=path.parent) as work:
+            target = Path(work) / path.name
+            make(target)
+            target.replace(path)
+    return path
 
 
 @dataclass(frozen=True, slots=True)

@@ -11,7 +11,7 @@ from pathlib import Path
 
 import brotli
 
-from pwa.bundle.places import cache
+from pwa.bundle.places import cache, made_once
 
 COMPRESSED = {".html", ".js", ".mjs", ".json", ".wasm", ".otf", ".bin", ".txt", ""}
 NOT_KEPT = ("sw.js", "build.json", "version.json", "assets/NOTICES", "assets/fonts/LICENSE")
@@ -34,15 +34,16 @@ def revision_of(files: dict[str, str]) -> str:
     return hashlib.sha256(json.dumps(files, sort_keys=True).encode()).hexdigest()[:12]
 
 
-def _copy_made_once(content: bytes, kind: str) -> Path:
+def _compressed(content: bytes, kind: str) -> Path:
     """The compressed form of a content, from the cache if it was made before."""
-    out = cache("compressed") / f"{hashlib.sha256(content).hexdigest()}.{kind}"
-    if not out.exists():
-        if kind == "gz":
-            out.write_bytes(gzip.compress(content, 9, mtime=0))
-        else:
-            out.write_bytes(brotli.compress(content, quality=BROTLI_QUALITY))
-    return out
+
+    def make(target: Path) -> None:
+        gz = kind == "gz"
+        target.write_bytes(
+            gzip.compress(content, 9, mtime=0) if gz else brotli.compress(content, quality=BROTLI_QUALITY)
+        )
+
+    return made_once(cache("compressed") / f"{hashlib.sha256(content).hexdigest()}.{kind}", make)
 
 
 def write_compressed(site: Path) -> None:
@@ -52,7 +53,7 @@ def write_compressed(site: Path) -> None:
             continue
         content = path.read_bytes()
         for kind in ("gz", "br"):
-            made = _copy_made_once(content, kind)
+            made = _compressed(content, kind)
             if made.stat().st_size < WORTH_IT * len(content):
                 shutil.copyfile(made, path.with_name(f"{path.name}.{kind}"))
 

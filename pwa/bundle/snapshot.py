@@ -12,7 +12,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from pwa.bundle.node import run_script
-from pwa.bundle.places import PYODIDE, WEB, cache
+from pwa.bundle.places import PYODIDE, WEB, cache, made_once
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,13 +40,13 @@ def make_snapshot(library_zip: Path, library_file: str, node: str) -> Snapshot:
     parts = [library_zip.read_bytes(), preload.encode(), (WEB / "snapshot.mjs").read_bytes()]
     parts.append((PYODIDE / "pyodide.asm.wasm").read_bytes())
     key = hashlib.sha256(b"".join(hashlib.sha256(part).digest() for part in parts)).hexdigest()[:16]
-    out = cache("snapshots") / f"{key}.bin"
-    if not out.exists():
-        script = out.with_suffix(".py")
+
+    def make(target: Path) -> None:
+        script = target.with_name("preload.py")
         script.write_text(preload, encoding="utf-8")
-        unfinished = out.with_suffix(".new")
-        run_script(node, "snapshot.mjs", library_zip, library_file, script, unfinished)
-        unfinished.replace(out)
+        run_script(node, "snapshot.mjs", library_zip, library_file, script, target)
+
+    out = made_once(cache("snapshots") / f"{key}.bin", make)
     content = out.read_bytes()
     header = int.from_bytes(content[4:8], "little")  # the file begins with its magic word and the size of its header
     return Snapshot(content, len(content) - header)

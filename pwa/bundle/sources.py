@@ -11,26 +11,29 @@ from pathlib import Path
 
 from pwa.bundle.places import ASSETS, ROOT, WEB, Choices
 
-LIBRARIES = (
-    "flet",
-    "repath",
-    "six",
-    "msgpack",
-)  # flet and what it imports in the browser, all pure Python there
+# What the browser's Python gets of the installed packages, as pure Python: for the app, and for the PDF.
+LIBRARIES = ("flet", "repath", "six", "msgpack", "segno")
+PDF_LIBRARIES = ("fpdf2", "fonttools", "defusedxml")
 LIBRARY_SUFFIXES = {".py", ".json"}
-# Parts of flet that only a server, a desktop or a test can use.
-LIBRARY_LEAVES_OUT = ("flet/testing/", "flet/fastapi/", "flet/auth/providers/", "flet/__pyinstaller/")
-BUILD_TOOLS = ("flet", "flet-web", "fonttools", "brotli")
+# Parts that only a server, a desktop, a test or a maker of fonts can use.
+LIBRARY_LEAVES_OUT = (
+    *(f"flet/{part}/" for part in ("testing", "fastapi", "auth/providers", "__pyinstaller")),
+    *(f"fontTools/{part}/" for part in ("cu2qu", "diff", "merge", "mtiLib", "qu2cu", "t1Lib", "ufoLib", "voltLib")),
+    *(f"fontTools/{part}" for part in ("afmLib", "fontBuilder", "tfmLib", "ttx", "feaLib/builder", "feaLib/parser")),
+    *(f"fontTools/varLib/{part}" for part in ("avar", "interpolat", "mutator", "plot")),
+    *(f"fontTools/ttLib/{part}" for part in ("woff2", "scaleUpem", "removeOverlaps", "reorderGlyphs")),
+)
+BUILD_TOOLS = ("flet-web", "brotli")
 
 APP_PACKAGES = ("core", "pwa")
 APP_LEAVES_OUT = ("pwa/bundle/", "pwa/assets/icons/", "pwa/__main__.py")
 APP_DATA = {".json", ".tsv", ".ttf", ".txt"}
 
 
-def library_files() -> dict[str, Path]:
-    """The Python files of the libraries: place in the archive -> file on this machine."""
+def library_files(libraries: Iterable[str] = LIBRARIES) -> dict[str, Path]:
+    """The Python files of installed packages: place in the archive -> file on this machine."""
     files = {}
-    for name in LIBRARIES:
+    for name in libraries:
         installed = distribution(name)
         for entry in installed.files or ():
             place = entry.as_posix()
@@ -87,7 +90,7 @@ def _own_files() -> Iterator[tuple[str, Path]]:
 
 def build_digest(choices: Choices, node: str | None) -> str:
     """A hash of everything a build depends on; while it stays the same, the finished site is up to date."""
-    tools = [f"{name}=={version(name)}" for name in (*LIBRARIES, *BUILD_TOOLS)]
+    tools = [f"{name}=={version(name)}" for name in (*LIBRARIES, *PDF_LIBRARIES, *BUILD_TOOLS)]
     settings = [choices.base, "with Node" if node else "without Node", platform.python_version()]
     text = "\n".join([*tools, *settings, digest_of(_own_files())])
     return hashlib.sha256(text.encode()).hexdigest()

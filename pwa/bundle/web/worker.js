@@ -114,14 +114,28 @@ async function loadNumpy() {
   return CONFIG.numpyVersion;
 }
 
+async function loadPdf() {
+  python.FS.writeFile(CONFIG.pdfFile, await unpacked(CONFIG.pdf));
+  await python.runPythonAsync(`import sys; sys.path.append(${JSON.stringify(CONFIG.pdfFile)})`);
+}
+
+// Done once, however often asked for; asked again after a failure, tried again.
+function once(load) {
+  let loading = null;
+  return () => {
+    loading ??= load().catch((error) => {
+      loading = null;
+      throw error;
+    });
+    return loading;
+  };
+}
+
 // ---- what Python may ask: `import tapwright_host` -----------------------------------------------------------------------
-let numpy = null;
 const host = {
   version: CONFIG.version,
-  load_numpy: () => {
-    numpy ??= loadNumpy().catch((error) => { numpy = null; throw error; });
-    return numpy;
-  },
+  load_numpy: once(loadNumpy),
+  load_pdf: once(loadPdf),
   offline_state: () => state.offline,
   update_waiting: () => state.update,
   on_change: (listener) => { listeners.push(listener.copy()); }, // the argument itself ends with this call

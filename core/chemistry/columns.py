@@ -10,10 +10,11 @@ from numpy.typing import NDArray
 
 from core.chemistry.equilibrium import ITERATIONS, State, solve
 from core.chemistry.model import ALWAYS, LN10, C, H, Model, model_for
-from core.chemistry.problem import CLOSED, KNOWN_PH_ALK, KNOWN_PH_DIC, NOTHING, OPEN, Problem
+from core.chemistry.problem import CLOSED, KNOWN_PH_ALK, KNOWN_PH_DIC, NOTHING, OPEN, Closure, Problem
 from core.chemistry.reactions import GAS_CONSTANTS
 from core.chemistry.solution import IONS, TOTALS, Solution, Value, solved
 from core.chemistry.thermodynamics import evaluate
+from core.errors import InputError
 
 Floats = NDArray[np.float64]
 
@@ -57,11 +58,18 @@ class Columns:
 
     def part(self, rows: NDArray[np.intp]) -> Columns:
         """Some of the waters, as a row."""
-        parts = (None if p is None else p[rows] for p in (self.ph, self.alkalinity, self.dic))
         return Columns(
-            (rows.size,), self.data, self.temp_c[rows], self.components, self.totals[:, rows], self.sulfur[rows],
-            *parts, self.why[rows],
-        )  # fmt: skip
+            (rows.size,),
+            self.data,
+            self.temp_c[rows],
+            self.components,
+            self.totals[:, rows],
+            self.sulfur[rows],
+            None if self.ph is None else self.ph[rows],
+            None if self.alkalinity is None else self.alkalinity[rows],
+            None if self.dic is None else self.dic[rows],
+            self.why[rows],
+        )
 
     def model(self, pairs: bool = True) -> Model:
         """The species of these waters."""
@@ -169,38 +177,41 @@ def _settled(solution: Solution, data: str) -> tuple[Columns, State]:
 
 def _at_known_ph(cols: Columns) -> State:
     """Equilibrium of waters whose pH is known with alkalinity or carbon; fills in whichever of the two is not."""
-    sulfur = np.maximum(cols.sulfur, NOTHING)
-    by_alkalinity = cols.alkalinity is not None
-    known = 0.5 * cols.alkalinity if cols.alkalinity is not None else np.maximum(cols.dic, NOTHING)
-    problem = Problem(
-        cols.model(),
-        cols.temp_c,
-        cols.totals,
-        np.array([np.zeros_like(known), known, sulfur]),
-        KNOWN_PH_ALK if by_alkalinity else KNOWN_PH_DIC,
-        ln_h=-LN10 * cols.ph,
-    )
-    state = _marked(cols, solve(problem))
-    if by_alkalinity:
-        _admit_without_carbon(cols, state)
+    if cols.alkalinity is not None:
+        state = _solved_at_ph(cols, 0.5 * cols.alkalinity, KNOWN_PH_ALK)
+        _admit_without_carbon(cols, state, cols.alkalinity)
+    elif cols.dic is not None:
+        state = _solved_at_ph(cols, np.maximum(cols.dic, NOTHING), KNOWN_PH_DIC)
+    else:
+        raise InputError("ph, alkalinity, dic", ["ph"], "A pH alone does not make a water; give alkalinity or dic too.")
     answered = cols.why == OK
     cols.dic = np.where(answered, state.sums[C], 0.0)
-    cols.alkalinity = np.where(answered, 2.0 * state.sums[C] - state.sums[H], 0.0)
+    cols.alkalinity = np.where(answered, _alkalinity(state), 0.0)
     return state
 
 
-def _admit_without_carbon(cols: Columns, state: State) -> None:
-    """Waters with no carbonate at all, where pH and alkalinity agree as closely as they can be read."""
+def _alkalinity(state: State) -> Floats:
+    return 2.0 * state.sums[C] - state.sums[H]
+
+
+def _solved_at_ph(cols: Columns, known: Floats, closure: Closure) -> State:
+    ln_h = None if cols.ph is None else -LN10 * cols.ph
+    given = np.array([np.zeros_like(known), known, np.maximum(cols.sulfur, NOTHING)])
+    problem = Problem(cols.model(), cols.temp_c, cols.totals, given, closure, ln_h=ln_h)
+    return _marked(cols, solve(problem))
+
+
+def _admit_without_carbon(cols: Columns, state: State, told: Floats) -> None:
+    """Waters with no carbonate at all, where pH and alkalinity agree as closely as they can be read: pH is kept."""
     rows = np.flatnonzero(cols.why == NO_CARBON)
-    if not rows.size or cols.alkalinity is None:
+    if not rows.size:
         return
     part = cols.part(rows)
-    told = cols.alkalinity[rows]
-    part.alkalinity, part.dic = None, np.zeros(rows.size)
+    part.alkalinity = None
     part.why[:] = OK
-    found = _at_known_ph(part)
-    close = np.abs(part.alkalinity - told) <= READ_TO + READ_TO_SHARE * np.abs(told)
-    admitted = close & (part.why == OK)
+    found = _solved_at_ph(part, np.full(rows.size, NOTHING), KNOWN_PH_DIC)
+    gap = np.abs(_alkalinity(found) - told[rows])
+    admitted = (gap <= READ_TO + READ_TO_SHARE * np.abs(told[rows])) & (part.why == OK)
     if admitted.any():
         state.put(rows[admitted], found, admitted)
         cols.why[rows[admitted]] = OK
@@ -273,6 +284,6 @@ def as_solution(
             values[name] = value
     values["temp_c"] = given.temp_c if temp_c is None else temp_c
     values["ph"] = cols.out(with_nan(cols, -state.x[H] / LN10))
-    values["alkalinity"] = cols.out(with_nan(cols, (2.0 * state.sums[C] - state.sums[H]) / MILLI))
+    values["alkalinity"] = cols.out(with_nan(cols, _alkalinity(state) / MILLI))
     values["dic"] = cols.out(with_nan(cols, carbon(state) / MILLI))
     return solved(**values)

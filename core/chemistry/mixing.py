@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from typing import Any
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
 from core.chemistry.columns import conserved, resolved
 from core.chemistry.solution import HIGHEST, TOTALS, Solution, Value, number, within
@@ -34,10 +35,7 @@ def mix(solutions: Sequence[Solution], shares: Sequence[ArrayLike] | ArrayLike, 
 
 
 def _parts(waters: list[Solution], shares: Sequence[ArrayLike] | ArrayLike) -> list[Value]:
-    try:
-        given = list(shares)  # type: ignore[arg-type]
-    except TypeError:
-        given = [shares]
+    given: list[Any] = list(shares) if isinstance(shares, Sequence | np.ndarray) else [shares]
     if not waters or len(given) != len(waters):
         raise InputError(
             "shares",
@@ -62,8 +60,8 @@ def _blend(weights: list[Value], values: list[Value]) -> Value:
     return float(total) if np.ndim(total) == 0 else np.asarray(total)
 
 
-def _first_reason(reasons: list[object]) -> object:
-    told = np.asarray(reasons[0], dtype=object)
+def _first_reason(reasons: list[str | NDArray[np.object_]]) -> str | NDArray[np.object_]:
+    told: NDArray[np.object_] = np.asarray(reasons[0], dtype=object)
     for reason in reasons[1:]:
         told = np.where(told == "", np.asarray(reason, dtype=object), told)
     return told if np.ndim(told) else str(told)

@@ -219,7 +219,8 @@ def speciate(solution: Solution, *, p_co2: ArrayLike | None = None, data: str | 
 
     Closed, pH, alkalinity and dissolved carbon are those of the water. Open, alkalinity stays and dissolved carbon
     follows the gas (air holds about 4.2e-4 atm). Constants 0 to 90 °C; activity coefficients to I about 0.5 mol/kg;
-    `notes` says when a water leaves that range. `data` is the set of the water unless another is named.
+    `notes` says when a water leaves that range. `data` is the set of the water unless another is named. Where pH
+    leaves alkalinity no room for carbonate, by up to 1 %, there is none, and alkalinity is what the pH says.
     """
     gas = None if p_co2 is None else pressure(p_co2)
     cols = columns(solution, data and check_data(data), *(() if gas is None else (gas,)))

@@ -85,7 +85,7 @@ def _softener_for(design: Design, items: Iterable[Item]) -> Item | None:
         and item.fits in ("", design.kind)
         and float(item.size or 0) >= design.resin * SAME_SIZE
     ]
-    return min(fitting, key=lambda item: (item.size, item.price), default=None)
+    return min(fitting, key=lambda item: (item.fits != design.kind, item.size, item.price), default=None)
 
 
 def _quantity(design: Design, item: Item, is_softener: bool) -> Decimal | None:

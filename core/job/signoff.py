@@ -198,8 +198,8 @@ def _words(promise: _Promise, verdict: str) -> Phrase:
         text, amounts = "at least {low}", {"low": low}
     else:
         text, amounts = "{low} to {high}", {"low": low, "high": high}
-    lead = {MET: "As promised", NOT_MET: "Not as promised", CANNOT_TELL: "May lie on either side of what was promised"}
-    return say(f"{lead[verdict]}: {text}.", **amounts)
+    both = "; the truth may lie on either side" if verdict == CANNOT_TELL else ""
+    return say(f"Promised: {text}{both}.", **amounts)
 
 
 def _would_tell(promise: _Promise, reading: Measured, work: Working) -> Phrase:
@@ -248,9 +248,9 @@ def signoff_part(result: SignOff) -> Part:
 
 
 def _answer(check: Check) -> Answer:
-    words = check.words
-    if check.would_tell is not None:
-        words = say(f"{words.text} {check.would_tell.text}", **words.amounts, **check.would_tell.amounts)
+    tells = check.would_tell or say("")
+    text = f"{check.verdict.capitalize()}. {check.words.text} {tells.text}".rstrip()
+    words = say(text, **check.words.amounts, **tells.amounts)
     names = ("at least", "at most")
     marks = tuple(
         Mark(name, Amount(end, check.unit, check.quantity))

@@ -23,7 +23,7 @@ OUT = ASSETS / "fonts"
 NAME = "tapwright-sans"
 
 # Signs a water report, a formula or a setting may hold and Roboto has not.
-LACKING = "₀₁₂₃₄₅₆₇₈₉₊₋⁰⁴⁵⁶⁷⁸⁹⁺⁻→←↑↓↔⇌∅⌀✓✗⚠★☆●○■□▲▼△▽◆◇⅓⅔≡∝∼∥‑ℹ☐☑▶◀↺⟳∙⋅"
+LACKING = "₀₁₂₃₄₅₆₇₈₉₊₋⁰⁴⁵⁶⁷⁸⁹⁺⁻→←↑↓↔⇌∅⌀✓✗⚠★☆●○■□▲▼△▽◆◇⅓⅔≡∝∼∥‑ℹ☐☑▶◀↺⟳∙⋅˂˃‒∕∘ȳ\u0304"
 
 
 def _cut(source: Path, out: Path, code_points: list[int] | None, features: list[str]) -> None:

@@ -27,7 +27,7 @@ from dataclasses import dataclass, replace
 from typing import NamedTuple
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
 from core.chemistry import Solution, Speciation, speciate
 from core.constants import MOLAR_MASS_KCL, MOLAR_MASS_NACL
@@ -264,7 +264,7 @@ def _displace(
     steps = np.ceil(brine_steps + rinse_volume / pore - 1e-9).astype(int)
     order = np.argsort(-steps, kind="stable")  # longest first: those still running are always the first few
     resin, voids, log_x = column.resin[:, order], column.pore[:, order], column.log_x[order]
-    pairs = _Pairing(water, rinse[:, order])
+    pairs = _Pairing(water, column.constants, order)
     raw = np.ones((len(order), cells))
     left, peak = np.zeros((4, len(order))), np.zeros(len(order))
     longest = steps[order]
@@ -287,7 +287,7 @@ def _displace(
             resin[:, now] + voids[:, now],
             column.capacity,
             column.voids,
-            pairs.constants(column.constants, voids[:, now] / column.voids, now, raw[now]),
+            pairs.constants(voids[:, now] / column.voids, now, raw[now]),
             guess,
         )
         voids[:, now] = CHARGE[:, None, None] * column.voids * found.molality
@@ -298,24 +298,27 @@ def _displace(
     return Waste(steps * pore, brine_volume, fed, left[:, back], peak[back])
 
 
-@dataclass(slots=True)
 class _Pairing:
-    """Constants of exchange, lowered for the ions that the water's anions bind in pairs."""
+    """Constants of exchange, lowered for the ions that the water's anions bind in pairs; cases in the order given."""
 
-    water: FeedWater
-    feed: Floats  # eq/kg, axes (ion, case)
+    def __init__(self, water: FeedWater, constants: Floats, order: NDArray[np.int_]) -> None:
+        self._plain = constants[:, None, None]
+        self._bound = water.pairing is not None
+        if not self._bound:
+            return
+        hard, soft = np.broadcast_to(water.pairing, (2, len(IONS), len(order)))[:, :, order, None]
+        feed = water.equivalents()
+        feed_hardness = np.broadcast_to(feed[0] + feed[1], order.shape)[order, None]
+        self._excess = soft - 1.0
+        self._rise = hard - soft  # from softened water to water as it comes
+        self._per_hardness = 1.0 / feed_hardness
 
-    def constants(self, constants: Floats, inflow: Floats, now: slice, raw: ArrayLike = 1.0) -> Floats:
+    def constants(self, inflow: Floats, now: slice, raw: ArrayLike = 1.0) -> Floats:
         """Constants for water of this composition [eq/kg], raw being the part of it that is not brine."""
-        plain = constants[:, None, None]
-        if self.water.pairing is None:
-            return plain
-        hard, soft = np.broadcast_to(self.water.pairing[..., None], (2, *self.feed.shape, 1))[:, :, now]
-        feed = self.water.equivalents()
-        feed_hardness = np.broadcast_to(feed[0] + feed[1], self.feed.shape[1:])[now, None]
-        hardness = np.clip((inflow[0] + inflow[1]) / np.maximum(feed_hardness, 1e-30), 0.0, 1.0)
-        paired = soft + (hard - soft) * hardness
-        return plain / (1.0 + raw * (paired - 1.0))
+        if not self._bound:
+            return self._plain
+        hardness = np.minimum((inflow[0] + inflow[1]) * self._per_hardness[now], 1.0)
+        return self._plain / (1.0 + raw * (self._excess[:, now] + self._rise[:, now] * hardness))
 
 
 def serve(column: Column, water: FeedWater, bed_volumes: ArrayLike, steps: int = STEPS) -> Curve:
@@ -325,7 +328,7 @@ def serve(column: Column, water: FeedWater, bed_volumes: ArrayLike, steps: int =
     """
     cases, cells = column.log_x.shape
     feed = np.broadcast_to(water.equivalents(), (4, cases))
-    pairs = _Pairing(water, feed)
+    pairs = _Pairing(water, column.constants, np.arange(cases))
     portion = (np.broadcast_to(np.asarray(bed_volumes, dtype=float).reshape(-1), (cases,)) / steps)[:, None]
     per_cell = portion * cells  # kg of water a step per litre of cell
     out = np.empty((4, cases, steps))
@@ -340,7 +343,7 @@ def serve(column: Column, water: FeedWater, bed_volumes: ArrayLike, steps: int =
             column.resin + column.pore + volume * entering,
             column.capacity,
             column.voids + volume,
-            pairs.constants(column.constants, entering, slice(None)),
+            pairs.constants(entering, slice(None)),
             column.log_x,
         )
         flowing = charge * found.molality

@@ -23,6 +23,18 @@ class Reference:
 
 
 REFERENCES: dict[str, Reference] = {
+    "AWWA-B201": Reference(
+        "ANSI/AWWA B201-98, soda ash: purity and largest solubility in the foreword, minimum of the body from memory",
+        "secondary",
+    ),
+    "AWWA-B202": Reference(
+        "ANSI/AWWA B202, quicklime and hydrated lime",
+        "from memory",
+    ),
+    "AWWA-B501": Reference(
+        "ANSI/AWWA B501, sodium hydroxide (caustic soda)",
+        "from memory",
+    ),
     "AWWA-C400": Reference(
         "ANSI/AWWA C400, asbestos-cement pressure pipe: aggressiveness index; bands from memory",
         "secondary",
@@ -47,6 +59,10 @@ REFERENCES: dict[str, Reference] = {
     ),
     "CH-CLASSES": Reference(
         "Swiss hardness steps in French degrees, as water suppliers print them",
+        "from memory",
+    ),
+    "CRC-HANDBOOK": Reference(
+        "CRC Handbook of Chemistry and Physics, solubility of inorganic compounds and concentrative properties of aqueous solutions",
         "from memory",
     ),
     "DANTZIG63": Reference(

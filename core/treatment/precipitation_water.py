@@ -287,25 +287,25 @@ def recarbonate(water: Solution, *, ph: float | None = 8.5, saturation: float | 
     def value(co2: Floats) -> Value:
         return getattr(speciate(add(water, co2=co2)), name)
 
-    amount, reached = _last_above(value, wanted, MOST_CO2)
+    # Up to the alkalinity CO2 turns hydroxide and carbonate to bicarbonate, and the curve bends; beyond, it is smooth.
+    bend = min(max(float(np.asarray(speciate(water).alkalinity)), 0.1), MOST_CO2 / 2.0)
+    first = np.concatenate([np.linspace(0.0, bend, 2 * GRID), np.geomspace(bend, MOST_CO2, GRID)[1:]])
+    amount, reached = _last_above(value, wanted, first)
     done = speciate(add(water, co2=amount))
     return Recarbonated(amount, done.solution, done.si_calcite, 0.0, reached)  # type: ignore[arg-type]
 
 
-def _last_above(value: Callable[[Floats], Value], wanted: float, most: float) -> tuple[float, bool]:
+def _last_above(value: Callable[[Floats], Value], wanted: float, amounts: Floats) -> tuple[float, bool]:
     """The smallest amount from which on the value stays at or below what is wanted."""
-    low, high = 0.0, most
-    for _ in range(2 * ROUNDS):
-        amounts = np.linspace(low, high, GRID)
-        values = np.asarray(value(amounts))
-        above = np.flatnonzero(~(values <= wanted))
+    for _ in range(ROUNDS + 1):
+        above = np.flatnonzero(~(np.asarray(value(amounts)) <= wanted))
         if not above.size:
-            return float(low), True
+            return float(amounts[0]), True
         last = int(above[-1])
-        if last == GRID - 1:
-            return float(high), False
-        low, high = amounts[last], amounts[last + 1]
-    return float(high), True
+        if last == len(amounts) - 1:
+            return float(amounts[-1]), False
+        amounts = np.linspace(amounts[last], amounts[last + 1], GRID)
+    return float(amounts[-1]), True
 
 
 def to_least_calcium(water: Solution) -> Recarbonated:

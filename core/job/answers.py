@@ -102,6 +102,28 @@ class Caution:
 
 
 @dataclass(frozen=True, slots=True)
+class Bar:
+    """One bar of a picture: where it stands, how high it is, what it means, and the entry it would set."""
+
+    at: Amount
+    height: Amount
+    words: Phrase
+    fits: bool  # whether it keeps every limit
+    chosen: bool
+
+
+@dataclass(frozen=True, slots=True)
+class Picture:
+    """A row of bars to touch; `sets` names the entry that a bar can be taken over into."""
+
+    title: str
+    along: str  # what the bars stand along
+    up: str  # what their height is
+    bars: tuple[Bar, ...]
+    sets: str = ""
+
+
+@dataclass(frozen=True, slots=True)
 class Part:
     """The assessment of one section. The first answer is its headline."""
 
@@ -112,6 +134,7 @@ class Part:
     assumptions: tuple[Assumption, ...] = ()
     cautions: tuple[Caution, ...] = ()
     spread: Mapping[str, tuple[float, float]] | None = None
+    picture: Picture | None = None
 
     @property
     def headline(self) -> Answer | None:

@@ -7,9 +7,11 @@ from functools import cached_property
 from core.job.answers import Part
 from core.job.blend import assess_blend
 from core.job.demand import Demand, assess_demand
+from core.job.options import assess_options
 from core.job.record import Job
+from core.job.run_out import assess_run_out
 from core.job.scale import assess_scale
-from core.job.softener import assess_softener
+from core.job.softener import Softener, assess_softener
 from core.job.water import assess_water
 
 
@@ -37,12 +39,26 @@ class Assessment:
     @cached_property
     def softener(self) -> Part:
         """Size, salt setting, running."""
-        return assess_softener(self.job, self._demand)
+        return self._softener.part
+
+    @cached_property
+    def options(self) -> Part:
+        """Other ways to do the softener's task."""
+        return assess_options(self._softener)
+
+    @cached_property
+    def run_out(self) -> Part:
+        """How often hard water reaches the tap."""
+        return assess_run_out(self._softener)
 
     @cached_property
     def blend(self) -> Part:
         """Raw water back into softened."""
         return assess_blend(self.job)
+
+    @cached_property
+    def _softener(self) -> Softener:
+        return assess_softener(self.job, self._demand)
 
     @cached_property
     def _demand(self) -> Demand:

@@ -8,6 +8,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from core.treatment.regions import REGIONS
+
 COMMON = "common practice, no source"
 
 # The one unit of each quantity inside the core; a role names a kind of quantity that keeps a unit of its own.
@@ -22,6 +24,7 @@ CORE_UNITS = {
     "temperature": "°C",
     "conductivity": "µS/cm",
     "share": "1",
+    "time": "day",
     "iron": "mg/L Fe",
     "manganese": "mg/L Mn",
     "sodium": "mg/L Na",
@@ -285,39 +288,26 @@ _SOFTENER = (
         ("g/L", "lb/ft³"),
         1.0,
         2000.0,
-        "Salt for each regeneration per volume of resin.",
-        Default(
-            6.0,
-            "lb/ft³",
-            "A saving setting; more salt gives more capacity, but less for each kilogram.",
-            "TRADE-SIZING",
-        ),
+        "Salt for each regeneration per volume of resin. Leave empty for a recommendation.",
     ),
     Field(
         "softener.shortest",
         "Shortest interval",
-        "",
-        (),
+        "time",
+        ("day",),
         0.0,
         365.0,
-        "Days from one regeneration to the next.",
-        Default(3.0, "", "Days; below that a softener spends its salt and water on rinsing.", "US-DISTRICT"),
+        "From one regeneration to the next. Leave empty for the rule of the region.",
         often=False,
     ),
     Field(
         "softener.longest",
         "Longest interval",
-        "",
-        (),
+        "time",
+        ("day",),
         0.1,
         365.0,
-        "Days. Standing resin grows germs: your local code or the maker may ask for much less.",
-        Default(
-            14.0,
-            "",
-            "Days; the upper end in use by the trade. German practice is 4 days or less.",
-            "TRADE-SIZING",
-        ),
+        "Standing resin grows germs. Leave empty for the rule of the region; the maker may ask for less.",
         often=False,
     ),
 )
@@ -385,9 +375,17 @@ CHOICES: dict[str, Choice] = {
         Choice(
             "softener.kind",
             "Kind",
-            (("single", "single tank"), ("twin", "twin tanks in turn")),
+            (("single", "single tank"), ("twin", "twin tanks in turn"), ("counter-current", "single, from below")),
             "single",
-            "A single tank keeps a day's water in reserve and regenerates at night; twins use each to its end.",
+            "A single tank keeps a day's water in reserve and regenerates at night; twins use each to its end; from "
+            "below means counter-current: less salt and less leakage, in a packed bed.",
+        ),
+        Choice(
+            "softener.region",
+            "Rules of",
+            (("unknown", "not chosen"), *REGIONS.items()),
+            "unknown",
+            "Until you choose, the stricter rule of all regions is used.",
         ),
         Choice(
             "softener.iron_rule",
@@ -410,6 +408,10 @@ CHOICES: dict[str, Choice] = {
         ),
     )
 }
+
+# The parts of the assessment that a section shows after its own: each made when there is time for it.
+FURTHER_PARTS: dict[str, tuple[str, ...]] = {"softener": ("options", "run_out")}
+PART_TITLES = {"options": "Other ways to do it", "run_out": "How often it runs out"}
 
 SECTIONS: dict[str, str] = {
     "water": "Water",

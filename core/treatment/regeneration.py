@@ -6,7 +6,7 @@ step_water(flow [L/min], minutes) -> L;  step_minutes(water [L], flow) -> min
 diluted_brine(salt [kg], strength=0.10) -> L                          brine as it meets the resin
 backwash_flow(area [m²], velocity=12.22 [m/h]) -> L/min
 regeneration_steps(resin_volume [L], area [m²], salt [kg], ...) -> steps  .water L, .flow L/min, .minutes
-water_per_regeneration(resin_volume [L], area [m²], salt [kg], temperature=15.6) -> L
+water_per_regeneration(resin_volume [L], area [m²], salt [kg], temperature=15.6, backwash_velocity=12.22) -> L
 regeneration_water(steps) -> L;  regeneration_minutes(steps) -> min
 """
 
@@ -169,14 +169,22 @@ def _dilution(salt: Number, strength: Number, refill: Number) -> Number:
     "Water per regeneration",
     "water = backwash + brine + slow rinse + fast rinse + refill",
     unit="L",
-    takes={"resin_volume": "L", "area": "m²", "salt": "kg", "temperature": "°C"},
+    takes={"resin_volume": "L", "area": "m²", "salt": "kg", "temperature": "°C", "backwash_velocity": "m/h"},
     source="OPERATOR-TEXT",
     validity="Usual times and rates of each step, the valve's own settings know better: backwash 10 min at "
-    "12.2 m/h, slow rinse 1.5 and fast rinse 2 bed volumes, brine of 10 %.",
+    "the velocity given, slow rinse 1.5 and fast rinse 2 bed volumes, brine of 10 %.",
 )
-def water_per_regeneration(resin_volume: Number, area: Number, salt: Number, temperature: Number = 15.6) -> Number:
+def water_per_regeneration(
+    resin_volume: Number,
+    area: Number,
+    salt: Number,
+    temperature: Number = 15.6,
+    backwash_velocity: Number = BACKWASH_VELOCITY,
+) -> Number:
     """Water that one regeneration with the usual steps takes from the main. [L]"""
-    return regeneration_water(regeneration_steps(resin_volume, area, salt, temperature=temperature))
+    return regeneration_water(
+        regeneration_steps(resin_volume, area, salt, temperature=temperature, backwash_velocity=backwash_velocity)
+    )
 
 
 def regeneration_water(steps: Iterable[Step]) -> Number:

@@ -18,18 +18,11 @@ from core.constants import GRAIN, INCH, MOLAR_MASS_CACO3, POUND, US_GALLON
 from core.data import Row, number, read_table
 from core.errors import InputError
 from core.treatment.broadcast import Number, broadcasts, larger
+from core.treatment.regions import REGIONS
 from core.treatment.resin import KILOGRAIN_PER_CUBIC_FOOT
 from core.treatment.vessel import GPM_PER_SQUARE_FOOT
 from core.working import formula
 
-REGIONS = {
-    "US": "United States",
-    "US-CA": "United States, California",
-    "US-PUBLIC": "United States, public supply",
-    "DE": "Germany",
-    "UK": "United Kingdom",
-    "EU": "European Union, other",
-}
 _PARENT = {"US-CA": "US", "US-PUBLIC": "US", "DE": "EU", "UK": "EU"}
 _GRAIN = GRAIN / 1000.0 / MOLAR_MASS_CACO3  # mol
 GRAIN_PER_POUND = _GRAIN / POUND * 1000.0  # mol/kg

@@ -25,6 +25,7 @@ from core.data import read_table
 from core.treatment import cost, hydraulics, regeneration, resin, softener, vessel
 from core.treatment.resin import CapacityTable, capacity_table
 from core.treatment.vessel import SPECIFIC_PEAK, SURFACE_PEAK, Bed
+from core.working import formula
 
 Floats = NDArray[np.float64]
 
@@ -167,6 +168,19 @@ def counter_current_table() -> CapacityTable:
     """Capacity [eq/L] against salt dose [g/L] in counter-current; handbooks' usual range, from memory."""
     table = read_table("counter_current_capacity")
     return capacity_table(table.column("salt_g_l"), table.column("capacity_eq_l"), "counter-current table")
+
+
+@formula(
+    "Capacity of the resin, regenerated from below",
+    "straight lines between the rows of the table",
+    unit="eq/L",
+    takes={"salt_dose": "g/L"},
+    source="common practice, no source",
+    validity="Handbooks' usual range, from memory; a packed or held-down bed.",
+)
+def counter_current_capacity(salt_dose: float) -> float:
+    """Capacity of resin regenerated in counter-current at a salt dose; NaN outside the table. [eq/L]"""
+    return resin.trade_capacity(salt_dose, counter_current_table())
 
 
 def search(

@@ -6,7 +6,7 @@
     daily_load(volume [L/day], hardness, target=0 [mmol/L]) -> mol/day
     bed_capacity(resin_volume [L], capacity [eq/L]) -> mol
     salt_per_regeneration(resin_volume [L], salt_dose [g/L]) -> kg
-    reserve_days(kind) -> day
+    reserve_days(kind) -> day;  reserve_share(kind) -> share
     reserve_of_days(load [mol/day], days=1) -> mol;  reserve_of_share(capacity [mol], share=0.25) -> mol
     usable_capacity(capacity [mol], reserve [mol]) -> mol
     days_between(usable [mol], load [mol/day], longest=inf [day]) -> day
@@ -157,8 +157,21 @@ def salt_per_regeneration(resin_volume: Number, salt_dose: Number) -> Number:
     validity="One tank regenerates in the night after its reserve is touched; of two tanks one is always ready.",
 )
 def reserve_days(kind: str) -> float:
-    """Days of average load that a softener of this kind ("single" or "twin") keeps in reserve. [day]"""
-    return {"single": 1.0, "twin": 0.0}[kind]
+    """Days of average load kept in reserve by a "single", "twin" or "counter-current" softener. [day]"""
+    return {"single": 1.0, "twin": 0.0, "counter-current": 1.0}[kind]
+
+
+@formula(
+    "Share kept in reserve",
+    "two tanks in turn: 3 % of each",
+    unit="",
+    takes={"kind": ""},
+    source="common practice, no source",
+    validity="0 to 3 % is usual where the other tank takes over at once.",
+)
+def reserve_share(kind: str) -> float:
+    """Share of its capacity that a softener of this kind keeps in reserve. [-]"""
+    return {"single": 0.0, "twin": 0.03, "counter-current": 0.0}[kind]
 
 
 @formula(

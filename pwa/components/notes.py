@@ -11,30 +11,48 @@ from core.job.fields import CHOICES, FIELDS
 from core.references import REFERENCES
 from pwa import theme
 from pwa.components.guard import guarded
+from pwa.components.picture import BarPicture
 from pwa.components.tone import ToneLine
 from pwa.components.words import Heading, Tappable
 from pwa.components.working import Working
 from pwa.state.display import Display
-from pwa.state.sheet import PartState
+from pwa.state.sheet import PartState, Sheet
 
 
 @guarded
-def Answers(state: PartState, shown: Callable[[], Display]) -> ft.Control:
-    """All answers of a section, each opening to its working; then assumptions and cautions."""
+def Answers(
+    state: PartState, shown: Callable[[], Display], title: str = "Answers, each opening to its working"
+) -> ft.Control:
+    """All answers of a part, each opening to its working."""
     opened, set_opened = ft.use_state("")
     part, display = state.part, shown()
     answer = part.answers.get(opened) if part and opened else None
     ft.use_dialog(_working_sheet(answer, display, lambda: set_opened("")) if answer else None)
-    if part is None:
-        return ft.Container()
+    if part is None or not part.answers:
+        return ft.Container(height=0)
     return ft.Column(
-        spacing=theme.PAD,
-        controls=[
-            *([_list(part, display, set_opened)] if part.answers else []),
-            *_cautions(part),
-            *_assumptions(part, display),
-        ],
+        spacing=0,
+        controls=[Heading(title), *[AnswerRow(answer, display, set_opened) for answer in part.answers.values()]],
     )
+
+
+@guarded
+def Remarks(state: PartState, shown: Callable[[], Display]) -> ft.Control:
+    """What to be careful about in a part, and what was assumed for it."""
+    part, display = state.part, shown()
+    if part is None:
+        return ft.Container(height=0)
+    return ft.Column(spacing=theme.PAD, controls=[*_cautions(part), *_assumptions(part, display)])
+
+
+@guarded
+def Further(state: PartState, title: str, sheet: Sheet, shown: Callable[[], Display]) -> ft.Control:
+    """A part that a section shows after its own answers: its picture and its answers."""
+    part = state.part
+    if part is None or not part.answers:
+        return ft.Container(height=0)
+    picture = [BarPicture(part.picture, sheet, shown)] if part.picture else []
+    return ft.Column(spacing=theme.PAD, controls=[Answers(state, shown, title), *picture])
 
 
 def _working_sheet(answer: Answer, display: Display, close) -> ft.BottomSheet:
@@ -50,16 +68,6 @@ def _working_sheet(answer: Answer, display: Display, close) -> ft.BottomSheet:
                 controls=[Working(answer, display), ft.TextButton("Close", on_click=lambda event: close())],
             ),
         ),
-    )
-
-
-def _list(part: Part, display: Display, open_) -> ft.Control:
-    return ft.Column(
-        spacing=0,
-        controls=[
-            Heading("Answers, each opening to its working"),
-            *[AnswerRow(answer, display, open_) for answer in part.answers.values()],
-        ],
     )
 
 

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import flet as ft
 
-from core.job.fields import CHOICES, FIELDS, SECTIONS
+from core.job.fields import CHOICES, FIELDS, FURTHER_PARTS, PART_TITLES, SECTIONS
 from pwa import theme
 from pwa.components.answer import AnswerStrip
 from pwa.components.entry import ChoiceField, EntryField
 from pwa.components.guard import guarded
-from pwa.components.notes import Answers
+from pwa.components.notes import Answers, Further, Remarks
 from pwa.components.words import Disclosure
 from pwa.state.display import Display
 from pwa.state.sheet import Sheet
@@ -24,6 +24,8 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
     def shown() -> Display:
         return workspace.display(sheet)
 
+    further = FURTHER_PARTS.get(section, ())
+    ft.use_effect(lambda: ft.context.page.run_task(workspace.look, sheet, section), [section])
     return ft.Column(
         expand=True,
         spacing=0,
@@ -38,6 +40,8 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                     *_entries(sheet, section, display, often=True),
                     More(sheet, section, display),
                     Answers(sheet.parts[section], shown),
+                    *[Further(sheet.parts[part], PART_TITLES[part], sheet, shown) for part in further],
+                    Remarks(sheet.parts[section], shown),
                 ],
             ),
             NextBar(sheet.job.id, section),

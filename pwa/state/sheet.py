@@ -14,7 +14,7 @@ import flet as ft
 
 from core.errors import UnitError
 from core.job.answers import Part
-from core.job.fields import CHOICES, FIELDS, SECTIONS, Field
+from core.job.fields import CHOICES, FIELDS, FURTHER_PARTS, SECTIONS, Field
 from core.job.record import Entry, Job
 from pwa.text import parse_quantity
 
@@ -91,7 +91,9 @@ class Sheet:
             key: ChoiceState(key, job.choices.get(key, choice.default), key in job.choices)
             for key, choice in CHOICES.items()
         }
-        self.parts = {key: PartState(key) for key in SECTIONS}
+        further = (part for parts in FURTHER_PARTS.values() for part in parts)
+        self.parts = {key: PartState(key) for key in (*SECTIONS, *further)}
+        self.looked_at = ""  # the section on the screen: what it shows further is kept up to date
 
     @property
     def hardness_unit(self) -> str:

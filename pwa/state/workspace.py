@@ -16,7 +16,7 @@ from typing import Any
 import flet as ft
 
 from core.errors import TapwrightError
-from core.job.fields import SECTIONS
+from core.job.fields import FURTHER_PARTS, SECTIONS
 from core.job.record import Job
 from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
@@ -30,6 +30,7 @@ from pwa.theme import SCALES, WIDE
 log = logging.getLogger("tapwright")
 
 REST = 0.25  # s after the last key press until the sections that are not in view are assessed again
+LEISURE = 0.1  # s between the parts that take longer, so that the screen is never held up for all of them
 PAGE = 50  # jobs of the list that are fetched at once
 
 
@@ -118,6 +119,7 @@ class Workspace:
         self.standing.computing = True
         for sheet in self.sheets.values():
             self._assess_sheet(sheet, SECTIONS)
+            await self._further(sheet)
 
     def _host_changed(self) -> None:
         self.standing.update_waits = self.host.update_waits()
@@ -212,6 +214,20 @@ class Workspace:
             self._assess_sheet(sheet, (section,))
             await asyncio.sleep(0)
         self._keep(sheet)
+        await self._further(sheet)
+
+    async def look(self, sheet: Sheet, section: str) -> None:
+        """Say which section is on the screen; what it shows further is worked out at leisure."""
+        sheet.looked_at = section
+        await self._further(sheet)
+
+    async def _further(self, sheet: Sheet) -> None:
+        job = sheet.job
+        for part in FURTHER_PARTS.get(sheet.looked_at, ()):
+            await asyncio.sleep(LEISURE)
+            if sheet.job is not job:
+                return  # changed meanwhile: the next rest comes back here
+            self._assess_sheet(sheet, (part,))
 
     def _assess_sheet(self, sheet: Sheet, sections: Any) -> None:
         if self._assess is None:

@@ -67,7 +67,7 @@ def test_what_was_not_entered_is_said_to_be_assumed():
     """Nothing is assumed in silence."""
     assumed = {assumption.field for assumption in assess(job(water__iron=None)).softener.assumptions}
 
-    assert {"water.iron", "water.manganese", "demand.per_person", "softener.salt_dose"} <= assumed
+    assert {"water.iron", "water.manganese", "demand.per_person", "softener.longest"} <= assumed
 
 
 def test_a_typed_text_that_is_no_number_stops_only_what_needs_it():

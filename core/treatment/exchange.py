@@ -24,7 +24,7 @@ Floats = NDArray[np.float64]
 IONS = ("Ca", "Mg", "Na", "K")
 CHARGE = np.array([2.0, 2.0, 1.0, 1.0])
 RESIN_CAPACITY = 2.0  # eq/L, new 8 % DVB gel resin in sodium form, settled bed: 1.9 to 2.0; from memory
-_CLOSE = 1e-5  # the error is cubed at each step: the one after this is beyond the last bits
+_CLOSE = 1e-4  # the error is cubed at each step: the one after this is beyond the last bits
 _MOST_STEPS = 60
 
 
@@ -61,7 +61,8 @@ def equilibrate(totals: Floats, capacity: ArrayLike, water: ArrayLike, constants
     in_water = water / constants
     share = totals / capacity
     for _ in range(_MOST_STEPS):
-        fractions, stays = _loading(share, capacity, in_water, log_x)
+        stays = _stays(capacity, in_water, log_x)
+        fractions = share * (1.0 - stays)
         filled = fractions.sum(0)
         # Halley's step on ln(sum of fractions) against ln(x): nearly straight, so a poor guess does no harm.
         fractions *= stays
@@ -70,25 +71,20 @@ def equilibrate(totals: Floats, capacity: ArrayLike, water: ArrayLike, constants
         fractions *= stays
         bend = (4.0 * (fractions[0] + fractions[1]) + fractions[2] + fractions[3]) / filled - slope * slope
         error = np.log(filled)
-        step = np.clip(error * slope / (slope * slope - 0.5 * error * bend), -3.0, 3.0)
+        step = error * slope / (slope * slope - 0.5 * error * bend)
+        np.minimum(np.maximum(step, -3.0, out=step), 3.0, out=step)
         log_x = log_x - step
-        if np.abs(step).max(initial=0.0) < _CLOSE:
+        if max(step.max(initial=0.0), -step.min(initial=0.0)) < _CLOSE:
             break
-    fractions, stays = _loading(share, capacity, in_water, log_x)
+    stays = _stays(capacity, in_water, log_x)
     stays *= totals  # what the water keeps, eq
     return Equilibrium(totals - stays, stays / water, log_x)
 
 
-def _loading(share: Floats, capacity: ArrayLike, in_water: Floats, log_x: Floats) -> tuple[Floats, Floats]:
-    """Equivalent fractions on the resin for a trial ln(x), and the part of each ion that stays in the
-    water.
-    """
-    on_resin = np.empty_like(share)
-    np.exp(log_x, out=on_resin[2])
-    np.multiply(on_resin[2], on_resin[2], out=on_resin[0])
-    on_resin[1] = on_resin[0]
-    on_resin[3] = on_resin[2]
-    on_resin *= capacity
+def _stays(capacity: ArrayLike, in_water: Floats, log_x: Floats) -> Floats:
+    """Part of each ion that stays in the water for a trial ln(x)."""
+    on_resin = np.empty((4, *np.shape(log_x)))
+    on_resin[2:] = capacity * np.exp(log_x)
+    on_resin[:2] = on_resin[2] * on_resin[2] / capacity
     on_resin += in_water
-    stays = in_water / on_resin
-    return share * (1.0 - stays), stays
+    return np.divide(in_water, on_resin, out=on_resin)

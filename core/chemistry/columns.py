@@ -31,7 +31,7 @@ REASONS = (
 )
 
 
-@dataclass(slots=True)
+@dataclass(slots=True, eq=False, repr=False)
 class Columns:
     """Flat arrays of n waters, mol/kg: what the loop works on, and how to give its results their shape back."""
 
@@ -127,6 +127,11 @@ def _set_aside_unknown(made: Columns, why: str | NDArray[np.object_]) -> None:
     ):
         if part is not None:
             part[unknown] = plain
+
+
+def mark_unknown(cols: Columns, value: Value) -> None:
+    """Mark waters for which a further input (a temperature, a pressure) is not known."""
+    cols.why[np.isnan(flat(value, cols.shape)) & (cols.why == OK)] = UNKNOWN
 
 
 def balance(cols: Columns) -> Floats:

@@ -26,14 +26,15 @@ Floats = NDArray[np.float64]
 
 # The step squares its error, so that the answer is far closer than the last step was long
 LAST_STEP = 1e-6  # in ln(activity) and, relative, in ionic strength
-TOLERANCE = 1e-10  # of what follows a step behind: activity of water, partners of fluoride and chloride
+TOLERANCE = 1e-10  # of the partners of fluoride and chloride, which follow a step behind
+WATER_STEP = 1e-9  # in ln of the activity of water, which moves what it touches by as much and no more
 ITERATIONS = 80
 LARGEST_STEP = 2.5  # in ln(activity)
 CHUNK = 1500  # waters at a time, so that the species table stays in the processor's cache
 WATER_ACTIVITY = 0.017  # kg/mol, Raoult: a(H2O) = 1 - 0.017 Σ m, as [PA13]
 
 
-@dataclass(slots=True)
+@dataclass(slots=True, eq=False, repr=False)
 class State:
     """Where the loop ended: activities and the molality of every species."""
 
@@ -164,7 +165,7 @@ class _Batch:
             self.ln_water = np.log(np.maximum(1.0 - WATER_ACTIVITY * sums[COUNT], 0.01))
         done = np.max(np.abs(moved[:-1]), axis=0) < LAST_STEP
         done &= np.abs(moved[-1]) < LAST_STEP * (self.strength + 1e-6)
-        done &= np.abs(self.ln_water - ln_water_before) < 1e-9
+        done &= np.abs(self.ln_water - ln_water_before) < WATER_STEP
         if self.partner.size:
             done &= np.max(np.abs(self.partner / partner_before - 1.0), axis=0) < TOLERANCE
         return done

@@ -6,6 +6,7 @@ ion with its pairs. Only totals that occur get rows.
 
 from __future__ import annotations
 
+import re
 from functools import lru_cache
 
 import numpy as np
@@ -56,6 +57,8 @@ class Model:
         self.components = components
         self.species = _rows(data, components, pairs)
         self.names = tuple(s.name for s in self.species)
+        bare = {re.sub(r"[+-]\d?$", "", name): i for i, name in enumerate(self.names)}
+        self.row_of = bare | {name: i for i, name in enumerate(self.names)}
         self.base = sum(1 for s in self.species if not s.of)
         made = np.array([s.made for s in self.species], dtype=float).T
         self.made = np.ascontiguousarray(made[:3].T)  # species × (H+, CO3-2, SO4-2)
@@ -106,8 +109,8 @@ class Model:
         self.exponents = np.hstack((self.debye, self.made, self.water))
 
     def index(self, name: str) -> int:
-        """Row of a species."""
-        return self.names.index(name)
+        """Row of a species, by its name with or without the charge: "Ca+2" or "Ca". KeyError if there is none."""
+        return self.row_of[name]
 
     def ln_k(self, temp_c: Floats) -> Floats:
         """ln K of each species (rows) in each water (columns)."""

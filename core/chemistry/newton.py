@@ -18,6 +18,7 @@ from core.chemistry.problem import CLOSED, Closure, Contact, Problem
 Floats = NDArray[np.float64]
 
 SMALLEST = 1e-300
+FEW = 8  # waters
 
 
 def newton_step(problem: Problem, sums: Floats, strength_sums: Floats, totals: Floats, strength: Floats) -> Floats:
@@ -68,6 +69,8 @@ def _solved(closure: Closure, miss: Floats, slopes: Floats) -> Floats:
         answers, moves = _projections(closure)
         miss = answers @ miss
         slopes = np.tensordot(answers, np.tensordot(moves, slopes, axes=(1, 1)), axes=(1, 1))
+    if miss.shape[1] <= FEW:
+        return _solved_one_by_one(miss, slopes)
     size = len(miss)
     table = np.concatenate((slopes, -miss[:, None]), axis=1)
     for k in range(size - 1):
@@ -79,6 +82,14 @@ def _solved(closure: Closure, miss: Floats, slopes: Floats) -> Floats:
         if k:
             step[:k] -= table[:k, k] * step[k]
     return step
+
+
+def _solved_one_by_one(miss: Floats, slopes: Floats) -> Floats:
+    """The same for a few waters, where the calls of the elimination would cost more than its arithmetic."""
+    try:
+        return -np.linalg.solve(slopes.transpose(2, 0, 1), miss.T[:, :, None])[:, :, 0].T
+    except np.linalg.LinAlgError:  # a water without answer: it is left unsolved, and says so
+        return np.full_like(miss, np.nan)
 
 
 @lru_cache(maxsize=8)

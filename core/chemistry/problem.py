@@ -40,7 +40,7 @@ class Contact(NamedTuple):
     ln_k: Floats  # per water
 
 
-@dataclass(slots=True)
+@dataclass(slots=True, eq=False, repr=False)
 class Problem:
     """What is known of a batch of waters; arrays end in the axis of the waters."""
 

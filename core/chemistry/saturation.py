@@ -18,6 +18,7 @@ from core.chemistry.columns import (
     columns,
     find,
     ln_gas,
+    mark_unknown,
     settle,
     with_nan,
 )
@@ -40,7 +41,7 @@ ROUNDS = 8  # of choosing which solids form; there are at most three
 HAIR = 1e-9  # in SI: less than this above zero is saturation, not oversaturation
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Saturated:
     """A water in balance with solids, and what left it to get there.
 
@@ -85,6 +86,8 @@ def to_saturation(
     cols = columns(solution, data and check_data(data), *(() if gas is None else (gas,)))
     settled = settle(cols, solution)
     open_to = None if gas is None else ln_gas(cols, gas)
+    if gas is not None:
+        mark_unknown(cols, gas)
     if may_dissolve:
         state, amounts = _in_contact(cols, named, open_to)
     else:

@@ -11,8 +11,6 @@ from numpy.typing import ArrayLike, NDArray
 from core.chemistry.columns import (
     LN10,
     MILLI,
-    OK,
-    UNKNOWN,
     Columns,
     as_solution,
     carbon,
@@ -21,6 +19,7 @@ from core.chemistry.columns import (
     find_open,
     flat,
     ln_gas,
+    mark_unknown,
     settle,
     with_nan,
 )
@@ -48,6 +47,11 @@ class Speciation:
         self._state = state
         self._given = given
         self.data = cols.data
+
+    def __repr__(self) -> str:
+        return (
+            f"<Speciation ph={self.ph} ionic_strength={self.ionic_strength} si_calcite={self.si_calcite} {self.data}>"
+        )
 
     def _out(self, flat_values: NDArray[np.float64]) -> Value:
         return self._cols.out(with_nan(self._cols, flat_values))
@@ -111,7 +115,7 @@ class Speciation:
 
     @cached_property
     def molalities(self) -> Mapping[str, Value]:
-        """Molality of each species by name, such as "Ca+2", "CaHCO3+", "HCO3-". [mol/kg]"""
+        """Molality of each species by name, such as "Ca+2" (or "Ca"), "CaHCO3+", "HCO3-". [mol/kg]"""
         return _BySpecies(self, activities=False)
 
     @cached_property
@@ -226,6 +230,7 @@ def speciate(solution: Solution, *, p_co2: ArrayLike | None = None, data: str | 
     cols = columns(solution, data and check_data(data), *(() if gas is None else (gas,)))
     state = settle(cols, solution)
     if gas is not None:
+        mark_unknown(cols, gas)
         state = find_open(cols, gas)
     elif state is None:
         state = find(cols)
@@ -241,9 +246,8 @@ def at_temperature(solution: Solution, temp_c: ArrayLike, *, data: str | None = 
     cols = columns(solution, data and check_data(data), temp)
     settle(cols, solution)
     warm = flat(temp, cols.shape)
-    unknown = np.isnan(warm)
-    cols.temp_c = np.where(unknown, cols.temp_c, warm)
-    cols.why[unknown & (cols.why == OK)] = UNKNOWN
+    cols.temp_c = np.where(np.isnan(warm), cols.temp_c, warm)
+    mark_unknown(cols, temp)
     return as_solution(cols, find(cols), solution, temp_c=temp)
 
 

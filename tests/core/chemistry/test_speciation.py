@@ -46,6 +46,8 @@ def test_mass_action():
     assert_allclose(np.log10(a["OH-"] * a["H+"] / found.water_activity), log_k("OH-", 12.0), rtol=0, atol=1e-9)
     assert_allclose(np.log10(a["CO2"] / found.p_co2), log_k("CO2(g)", 12.0), rtol=0, atol=1e-9)
     assert_allclose(-np.log10(a["H+"]), 7.3, rtol=0, atol=1e-12)
+    assert found.molalities["Ca"] == found.molalities["Ca+2"]
+    assert found.molalities.get("rust") is None
     assert set(a) == set(found.molalities)
     assert len(a) == len(list(a))
 
@@ -68,6 +70,15 @@ def test_open_water_keeps_alkalinity():
     assert_allclose(aired.p_co2, 4.2e-4, rtol=1e-8)
     assert aired.ph > closed.ph
     assert aired.dic < closed.dic
+
+
+def test_unknown_pressure_is_alone():
+    """A pressure that is not known leaves its own water without answer."""
+    found = to_saturation(Solution(**HARD), p_co2=[4.2e-4, np.nan])
+
+    assert np.isnan(found.precipitated).tolist() == [False, True]
+    assert "not known" in found.why[1]
+    assert "not known" in speciate(Solution(**HARD), p_co2=np.nan).why
 
 
 def test_pure_water():

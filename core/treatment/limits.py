@@ -85,6 +85,7 @@ class Limit:
     status: str = ""
     rule_set: str = ""
     temperature: float | None = None  # °C at which pH, saturation and lime are meant; None: as the water is
+    kept_from_ph: float = inf  # from this pH on the limit counts as kept, whatever the value
 
     @property
     def typed(self) -> bool:
@@ -143,6 +144,7 @@ def _limit(row: Row) -> Limit:
         row["source"],
         row["status"],
         row["rule_set"],
+        kept_from_ph=PH_SHORTCUT if (row["rule_set"], row["parameter"]) == ("DE", "calcite dissolution") else inf,
     )
 
 

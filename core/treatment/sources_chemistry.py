@@ -55,6 +55,7 @@ class Judged:
     values: tuple[tuple[Limit, float], ...]  # each limit on pH, saturation and lime, with the value of the blend
     assumed: tuple[str, ...]  # parameters that were not measured: taken as none, calcium as three quarters of hardness
     why: str  # why there is no answer, else empty
+    of_sources: tuple[tuple[str, float], ...]  # each source that gives, with the lime it would precipitate by itself
     tried: int = 1  # blends whose chemistry was computed
     dearer_by: float = nan  # what these limits cost: a m³ against the cheapest blend without them
 
@@ -71,11 +72,12 @@ def judge(case: Case, x: Floats) -> Judged | None:
     if any(np.isnan(case.values(name)[giving]).any() for name in CHEMISTRY_NEEDS):
         return None
     giving_only = replace(case, sources=tuple(s for s, gives in zip(case.sources, giving, strict=True) if gives))
-    return _judged(Waters(giving_only), case, x[giving], x)
+    return _judged(Waters(giving_only), giving_only, x[giving], x)
 
 
 def _judged(waters: Waters, case: Case, parts: Floats, x: Floats) -> Judged:
     water = waters.blend(parts)
+    alone = precipitation_potential(waters.blends(np.eye(len(parts))))
     values = waters.values(parts[None, :], case.chemical)[:, 0]
     species = speciate(water)
     return Judged(
@@ -88,6 +90,11 @@ def _judged(waters: Waters, case: Case, parts: Floats, x: Floats) -> Judged:
         tuple((limit, float(value)) for limit, value in zip(case.chemical, values, strict=True)),
         waters.assumed,
         str(species.why),
+        tuple(
+            (source.name, float(lime))
+            for source, lime, part in zip(case.sources, alone, parts, strict=True)  # type: ignore[call-overload]
+            if part > STANDING
+        ),
         waters.tried,
     )
 

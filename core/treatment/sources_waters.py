@@ -84,14 +84,24 @@ class Waters:
         return Solution(**fields)
 
     def values(self, x: Floats, limits: Sequence[Limit]) -> Floats:
-        """Value for each limit, one a row, of each blend, one a column."""
+        """Value for each limit, one a row, of each blend, one a column.
+
+        Where a rule counts a limit as kept from some pH on, a value beyond it is given as the limit itself.
+        """
         self.tried += len(x)
         found = np.full((len(limits), len(x)), np.nan)
         for temperature in dict.fromkeys(limit.temperature for limit in limits):
             here = [i for i, limit in enumerate(limits) if limit.temperature == temperature]
-            known = _known(self.blends(x, temperature), {limits[i].parameter for i in here})
+            asked = {limits[i].parameter for i in here}
+            if any(np.isfinite(limits[i].kept_from_ph) for i in here):
+                asked.add("ph")
+            known = _known(self.blends(x, temperature), asked)
             for i in here:
-                found[i] = known[limits[i].parameter]
+                value, limit = known[limits[i].parameter], limits[i]
+                if np.isfinite(limit.kept_from_ph):
+                    excused = known["ph"] >= limit.kept_from_ph
+                    value = np.where(excused, np.clip(value, limit.low, limit.high), value)
+                found[i] = value
         return found
 
 

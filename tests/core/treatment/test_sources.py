@@ -64,16 +64,16 @@ def general(wells, demand, limits, cost=None):
 
 
 def test_least_cost_as_a_general_solver_finds_it():
-    """Verdict and cost of 300 random questions agree with HiGHS, which was asked in flows instead of shares."""
+    """Verdict and cost of 150 random questions agree with HiGHS, which was asked in flows instead of shares."""
     seen = {"fits": 0, "none fits": 0}
-    for seed in range(300):
+    for seed in range(150):
         wells, demand, limits = question(seed)
         ours, theirs = blend_sources(wells, demand, limits), general(wells, demand, limits)
         seen[ours.verdict] += 1
         assert (theirs.status == 0) == (ours.verdict == "fits"), seed
         if ours.verdict == "fits":
             assert ours.cost * demand == pytest.approx(theirs.fun, rel=SAME), seed
-    assert min(seen.values()) > 50
+    assert min(seen.values()) > 25
 
 
 def test_most_margin_as_a_general_solver_finds_it():
@@ -146,7 +146,7 @@ def test_nearest_to_targets_as_a_general_solver_finds_it():
 def test_standing_sources_as_a_mixed_integer_solver_finds_them():
     """Sources that stand still or give at least so much: cost agrees with HiGHS' branch and bound."""
     tried = stopped = 0
-    for seed in range(120):
+    for seed in range(60):
         wells, demand, limits = question(seed)
         wells = [replace(well, least=0.35 * well.most, may_stop=True) for well in wells]
         ours = blend_sources(wells, demand, limits)
@@ -172,8 +172,8 @@ def test_standing_sources_as_a_mixed_integer_solver_finds_them():
             assert ours.cost == pytest.approx(theirs.fun, rel=1e-7), seed
             for flow, well in zip(ours.flows, wells, strict=True):
                 assert flow.flow == 0.0 or well.least * (1 - 1e-6) <= flow.flow <= well.most * (1 + 1e-6)
-    assert tried > 30
-    assert stopped > 15
+    assert tried > 12
+    assert stopped > 6
 
 
 def test_two_wells_by_hand():
@@ -223,7 +223,7 @@ def test_order_of_sources_does_not_matter():
 def test_what_blocks_is_irreducible_and_would_fit_where_it_says():
     """Blocking limits cannot be kept together, by HiGHS; each is needed; eased to what is said, the rest fits."""
     tried = eased = 0
-    for seed in range(120):
+    for seed in range(60):
         wells, demand, limits = question(seed)
         blend = blend_sources(wells, demand, limits)
         if blend.verdict != "none fits" or blend.conflict.short_by or blend.conflict.over_by:
@@ -251,8 +251,8 @@ def test_what_blocks_is_irreducible_and_would_fit_where_it_says():
                 at = block.would_fit_at + (beyond if block.side == "high" else -beyond)
                 other = [replace(x, **{block.side: at}) if x == block.limit else x for x in limits]
                 assert general(wells, demand, other).status == status, seed
-    assert tried > 20
-    assert eased > 10
+    assert tried > 10
+    assert eased > 5
 
 
 def _one_side(block):
@@ -263,7 +263,7 @@ def _one_side(block):
 def test_nearest_blend_has_the_least_excess():
     """The sum of excesses, as shares of the limits, is the least there is, by HiGHS."""
     tried = 0
-    for seed in range(120):
+    for seed in range(60):
         wells, demand, limits = question(seed)
         blend = blend_sources(wells, demand, limits)
         if blend.verdict != "none fits" or blend.conflict.short_by or blend.conflict.over_by:
@@ -288,13 +288,13 @@ def test_nearest_blend_has_the_least_excess():
             bounds=[*((well.least / demand, well.most / demand) for well in wells), *[(0.0, None)] * k],
         )
         assert sum(excess.share for excess in blend.conflict.excess) == pytest.approx(theirs.fun, abs=1e-6), seed
-    assert tried > 20
+    assert tried > 10
 
 
 def test_most_water_within_the_limits():
     """A little less than the most water fits, a little more does not."""
     tried = 0
-    for seed in range(120):
+    for seed in range(60):
         wells, demand, limits = question(seed)
         wells = [replace(well, least=0.0) for well in wells]
         blend = blend_sources(wells, demand, limits)
@@ -334,7 +334,7 @@ def test_price_is_what_easing_saves():
                 eased = [*limits[:i], replace(limits[i], **{state.holds: at + step}), *limits[i + 1 :]]
                 cheaper = blend_sources(wells, demand, eased)
                 assert blend.cost - cheaper.cost == pytest.approx(saved, abs=2e-9), (seed, share)
-    assert tried > 30
+    assert tried > 12
 
 
 def test_gap_says_when_a_source_begins_to_pay():

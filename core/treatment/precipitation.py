@@ -14,9 +14,8 @@
     co2_first(excess, magnesium_left) -> mg/L;  co2_second(calcium_left, magnesium_left) -> mg/L
     book_dose(process, raw, goal, ...) -> BookDose          .dose .calcium .magnesium .practice
 
-Everything in mmol/L of the ion or the pure chemical, alkalinity in meq/L, unless the unit says otherwise. What the
-books leave out (that lime and calcite stay dissolved in part) is `precipitation_water`'s; what plants reach, and
-nobody can compute, is `practice` here.
+In mmol/L of the ion or pure chemical, alkalinity in meq/L, unless the unit says otherwise. Solubility, which the books
+leave out, is `precipitation_water`'s; what plants reach, and nobody can compute, is `practice` here.
 """
 
 from __future__ import annotations
@@ -32,7 +31,7 @@ from core.working import formula
 MOLAR_MASS_BRUCITE = molar_mass(Mg=1, O=2, H=2)  # g/mol [IUPAC21]
 MOLAR_MASS_CO2 = molar_mass(C=1, O=2)  # g/mol [IUPAC21]
 EXCESS_LIME = 1.25 / 2.0  # mmol/L beyond the equivalents, to lift the pH until magnesium falls out [LIME-COURSE]
-EXCESS_LIME_COLD = 1.75 / 2.0  # the same in cold water, 1.5 to 2 meq/L; from memory
+EXCESS_LIME_COLD = 1.75 / 2.0  # in cold water, 1.5 to 2 meq/L; from memory
 PRACTICAL_CALCIUM = (30.0 / MOLAR_MASS_CACO3, 40.0 / MOLAR_MASS_CACO3)  # mmol/L left in practice: books, typical
 PRACTICAL_MAGNESIUM = 10.0 / MOLAR_MASS_CACO3  # mmol/L left in practice where it is precipitated [LIME-COURSE]
 HEATER_MAGNESIUM = 40.0 / MOLAR_MASS_CACO3  # mmol/L; more than this left in the water deposits in heaters; from memory

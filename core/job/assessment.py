@@ -6,6 +6,7 @@ from functools import cached_property
 
 from core.job.answers import Part
 from core.job.blend import assess_blend
+from core.job.column import assess_column
 from core.job.demand import Demand, assess_demand
 from core.job.options import assess_options
 from core.job.record import Job
@@ -50,6 +51,11 @@ class Assessment:
     def run_out(self) -> Part:
         """How often hard water reaches the tap."""
         return assess_run_out(self._softener)
+
+    @cached_property
+    def column(self) -> Part:
+        """Capacity, leakage and waste by the column model."""
+        return assess_column(self.job, self._softener)
 
     @cached_property
     def blend(self) -> Part:

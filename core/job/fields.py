@@ -410,8 +410,13 @@ CHOICES: dict[str, Choice] = {
 }
 
 # The parts of the assessment that a section shows after its own: each made when there is time for it.
-FURTHER_PARTS: dict[str, tuple[str, ...]] = {"softener": ("options", "run_out")}
-PART_TITLES = {"options": "Other ways to do it", "run_out": "How often it runs out"}
+FURTHER_PARTS: dict[str, tuple[str, ...]] = {"softener": ("options", "run_out", "column")}
+PART_TITLES = {
+    "options": "Other ways to do it",
+    "run_out": "How often it runs out",
+    "column": "The same by a column model",
+}
+ON_DEMAND = {"column": "Work it out for this very water"}  # parts that take a second or more, and their button
 
 SECTIONS: dict[str, str] = {
     "water": "Water",

@@ -31,7 +31,7 @@ LITTLE_SCALE = 0.1  # kg a year, below which the heater is called safe; our choi
 def assess_scale(job: Job, demand: Demand) -> Part:
     """Scale in the heater a year, saturation cold and hot, and the indices, with their working."""
     ledger = Ledger(job)
-    water = _water(ledger)
+    water = water_of(ledger)
     heater = ledger.read("scale.heater_temperature")
     if water is None or heater is None:
         return ledger.part("scale", [], scale_cautions())
@@ -43,7 +43,8 @@ def assess_scale(job: Job, demand: Demand) -> Part:
     return ledger.part("scale", answers, (SCALD, *scale_cautions()))
 
 
-def _water(ledger: Ledger) -> Solution | None:
+def water_of(ledger: Ledger) -> Solution | None:
+    """The water of the job as the chemistry takes it; None where something is missing or cannot be, as noted."""
     temp_c = ledger.read("water.temperature")
     hardness = ledger.need("water.hardness", "Enter the hardness of the water.")
     ph = ledger.need("water.ph", "Enter the pH, to see whether the water lays down lime or dissolves it.")

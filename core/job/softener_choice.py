@@ -25,6 +25,7 @@ _TAKES = {
     "longest": "day",
     "salt_dose": "g/L",
 }
+LEAST_DOSE = 80.0  # g/L, co-current: below it resin at equilibrium leaks more than 1 gpg from the start of a run
 _VALIDITY = (
     "Of the generic sizes of the trade and its capacities, which hold to 10 or 15 %. Peaks up to 8 gpm/ft³ and "
     "20 gpm/ft², 15 psi at the peak."
@@ -54,13 +55,18 @@ class Task:
         given = {name: getattr(self, name) for name in _TAKES}
         return {name: value for name, value in given.items() if value is not None}
 
+    def _doses(self) -> tuple[float, ...]:
+        if self.salt_dose is not None:
+            return (self.salt_dose,)
+        return DOSES if self.kind == "counter-current" else tuple(dose for dose in DOSES if dose >= LEAST_DOSE)
+
     def search(self, bed: Bed | None = None) -> Search:
         """Every candidate, or every dose of one bed."""
         return search(
             Demand(self.load, self.hardness, self.peak_flow, self.temperature),
             Limits(shortest=self.shortest, longest=self.longest),
             beds=None if bed is None else (bed,),
-            doses=DOSES if self.salt_dose is None else (self.salt_dose,),
+            doses=self._doses(),
             arrangements=(self.arrangement,),
         )
 

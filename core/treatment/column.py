@@ -85,6 +85,8 @@ def feed_water(solution: Solution) -> FeedWater:
 
 def _total_over_free(water: Solution, species: Speciation, field: str, ion: str) -> Floats:
     total = np.asarray(getattr(water, field), dtype=float)
+    if not np.any(total):
+        return np.ones(total.shape)  # none of it in the water, and none among its species
     free = 1000.0 * np.asarray(species.molalities[ion], dtype=float)
     return np.where(total > 0.0, total / np.where(total > 0.0, free, 1.0), 1.0) * np.ones_like(water.temp_c)
 

@@ -7,7 +7,7 @@ from collections.abc import Callable
 import flet as ft
 
 from core.job.answers import Answer, Assumption, Part
-from core.job.fields import CHOICES, FIELDS
+from core.job.fields import CHOICES, FIELDS, ON_DEMAND
 from core.references import REFERENCES
 from pwa import theme
 from pwa.components.guard import guarded
@@ -46,9 +46,23 @@ def Remarks(state: PartState, shown: Callable[[], Display]) -> ft.Control:
 
 
 @guarded
-def Further(state: PartState, title: str, sheet: Sheet, shown: Callable[[], Display]) -> ft.Control:
-    """A part that a section shows after its own answers: its picture and its answers."""
+def Further(
+    state: PartState,
+    title: str,
+    sheet: Sheet,
+    shown: Callable[[], Display],
+    work_out: Callable[[Sheet, str], None],
+) -> ft.Control:
+    """A part that a section shows after its own answers: its picture and its answers, or the button that makes it."""
     part = state.part
+    if part is None and state.key in ON_DEMAND:
+        button = ft.OutlinedButton(
+            ON_DEMAND[state.key], height=theme.TOUCH, on_click=lambda event: work_out(sheet, state.key)
+        )
+        return ft.Column(controls=[Heading(title), button])
+    if part is not None and part.missing:
+        lacks = [ToneLine("missing", missing.text) for missing in part.missing]
+        return ft.Column(controls=[Heading(title), *lacks])
     if part is None or not part.answers:
         return ft.Container(height=0)
     picture = [BarPicture(part.picture, sheet, shown)] if part.picture else []

@@ -67,7 +67,13 @@ def amount(value: object, unit: str, display: Display) -> str:
     if isinstance(value, int | float) and not isinstance(value, bool):
         number = format_number(float(value), digits=DIGITS, decimal=display.decimal)
         return number if unit == "1" else f"{number} {unit_shown(unit)}".rstrip()
-    return f"{value}"
+    from core.chemistry import Solution  # numpy is in by the time anything has been worked out
+
+    if isinstance(value, Solution):
+        ions = {"Ca": value.ca, "Mg": value.mg, "Na": value.na, "Cl": value.cl, "SO4": value.so4}
+        held = ", ".join(f"{name} {format_number(float(mmol), DIGITS, display.decimal)}" for name, mmol in ions.items())
+        return unit_shown(f"{held} mmol/kg; pH {format_number(float(value.ph), DIGITS, display.decimal)}")
+    return f"{value}" if isinstance(value, str | bool) else "as worked out above"
 
 
 def source_of(key: str) -> str:

@@ -40,7 +40,10 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                     *_entries(sheet, section, display, often=True),
                     More(sheet, section, display),
                     Answers(sheet.parts[section], shown),
-                    *[Further(sheet.parts[part], PART_TITLES[part], sheet, shown) for part in further],
+                    *[
+                        Further(sheet.parts[part], PART_TITLES[part], sheet, shown, workspace.work_out)
+                        for part in further
+                    ],
                     Remarks(sheet.parts[section], shown),
                 ],
             ),

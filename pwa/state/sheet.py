@@ -58,8 +58,8 @@ class PartState:
         """The assessment; None until the first has been made."""
         return self._part
 
-    def put(self, part: Part) -> None:
-        """Take in a new assessment."""
+    def put(self, part: Part | None) -> None:
+        """Take in a new assessment, or none where the last one no longer holds."""
         self._part = part
         self.turn += 1
 

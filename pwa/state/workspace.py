@@ -16,7 +16,7 @@ from typing import Any
 import flet as ft
 
 from core.errors import TapwrightError
-from core.job.fields import FURTHER_PARTS, SECTIONS
+from core.job.fields import FURTHER_PARTS, ON_DEMAND, SECTIONS
 from core.job.record import Job
 from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
@@ -221,9 +221,16 @@ class Workspace:
         sheet.looked_at = section
         await self._further(sheet)
 
+    def work_out(self, sheet: Sheet, part: str) -> None:
+        """Make a part that was asked for."""
+        self._assess_sheet(sheet, (part,))
+
     async def _further(self, sheet: Sheet) -> None:
         job = sheet.job
         for part in FURTHER_PARTS.get(sheet.looked_at, ()):
+            if part in ON_DEMAND:
+                sheet.parts[part].put(None)
+                continue
             await asyncio.sleep(LEISURE)
             if sheet.job is not job:
                 return  # changed meanwhile: the next rest comes back here

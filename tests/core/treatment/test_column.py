@@ -232,3 +232,13 @@ def test_both_roads_stand_side_by_side():
     assert np.isnan(roads.trade).tolist() == [True, False, False]
     np.testing.assert_allclose(roads.practice, practice_capacity(roads.ceiling))
     assert np.all(roads.trade[1:] < roads.ceiling[1:])
+
+
+def test_a_water_without_potassium_has_a_feed():
+    """An ion that is not in the water has no species either; its pairs are one."""
+    water = Solution(temp_c=12, ph=7.3, alkalinity=5.0, ca=2.9, mg=1.0, cl=1.4, so4=0.7)
+
+    pairing = feed_water(water).pairing
+
+    assert np.isfinite(pairing).all()
+    assert pairing[0, 3].item() == 1.0

@@ -8,7 +8,6 @@ uses.
 
     demand, peak_flow                     water used in a day and at once
     softener, resin, vessel, regeneration load, capacity against salt, bed, steps of a regeneration
-    sizing                                the first answer: the smallest usual bed that will do
     search, cost, valve                   every bed, dose and arrangement; prices; settings of the head
     running                               simulated days: how often hard water reaches the tap
     exchange, column, column_run          the resin bed as cells at equilibrium: leakage, ceiling of capacity, waste

@@ -17,7 +17,7 @@
     regeneration_water_per_mol(water [L], interval, load) -> L/mol
 
 The resin is in `resin`, the vessel and its flows in `vessel`, the regeneration step by step in
-`regeneration`, the choice of a size in `sizing`.
+`regeneration`, the choice of a size in `search`.
 """
 
 from __future__ import annotations

@@ -13,6 +13,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 
 from core.job.readings.cutting import Token
+from core.job.readings.vocabulary import names
 
 
 @dataclass(slots=True)
@@ -76,8 +77,26 @@ def items_of(tokens: Sequence[Token]) -> list[Item]:
     marked = _without_limits(_without_remarks(list(tokens)))
     items: list[Item] = []
     for clause in _clauses(marked):
-        _place(clause, items)
+        _place(_with_symbols(clause), items)
     return items
+
+
+def _with_symbols(clause: list[Token]) -> list[Token]:
+    """In a clause without a name the symbol in a unit is one: "92 mg/l Ca, 18 mg/l Mg"."""
+    if any(token.kind == "name" for token in clause):
+        return clause
+    made: list[Token] = []
+    for token in clause:
+        unit, _, symbol = token.text.rpartition(" ")
+        node = names().steps.get(f"={symbol}") if token.kind == "unit" and unit else None
+        plain = token.end - token.start == len(token.text)  # "mg/l as Ca" is a unit, whatever stands before it
+        if node is None or node.name is None or ":" in node.name.field or not plain:
+            made.append(token)
+            continue
+        middle = token.end - len(symbol)
+        made.append(Token("unit", token.start, middle - 1, unit))
+        made.append(Token("name", middle, token.end, symbol, node.name))
+    return made
 
 
 def _place(clause: list[Token], items: list[Item]) -> None:

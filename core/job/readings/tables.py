@@ -13,6 +13,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass, field
+from functools import lru_cache
 
 from core.job.readings.cutting import fold
 from core.job.readings.tokens import tokens_of
@@ -135,6 +136,7 @@ def _signs(line: str, next_line: str) -> list[str]:
     return signs
 
 
+@lru_cache(maxsize=1024)
 def _role(text: str) -> str:
     """What a column holds, by the words of its heading; "" where they do not say."""
     roles = {role_of(word) for word in re.findall(r"[^\W\d_]+°?", fold(text))}
@@ -171,5 +173,6 @@ def _has_numbers_below(line: str, sign: str, count: int, least: int) -> bool:
     return len(cells) == count and numbers >= least
 
 
-def _kinds(text: str) -> set[str]:
-    return {token.kind for token in tokens_of(fold(text[:_LONGEST_HEADING]))}
+@lru_cache(maxsize=1024)
+def _kinds(text: str) -> frozenset[str]:
+    return frozenset(token.kind for token in tokens_of(fold(text[:_LONGEST_HEADING])))

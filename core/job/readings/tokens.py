@@ -5,7 +5,7 @@ tokens_of(line, offset) -> list[Token]       line folded, offset its place in th
 
 from __future__ import annotations
 
-from dataclasses import replace
+from functools import lru_cache
 
 from core.job.readings import vocabulary
 from core.job.readings.cutting import COUNTED, Token, cut
@@ -42,14 +42,33 @@ def _unit_end(pieces: list[Token], at: int) -> int:
     first = pieces[at]
     if first.kind not in ("word", "sign") or not begins_unit(first.text):
         return 0
-    for end in range(min(len(pieces), at + _UNIT_TOKENS), at, -1):
-        run = pieces[at:end]
-        if run[-1].end - first.start > LONGEST_UNIT or any(piece.kind == "sep" for piece in run):
-            continue
-        text = _without_links(run)
-        if unit_form(text) and _closes(text):
-            return end
-    return 0
+    if _is_symbol(first.text) and (at + 1 == len(pieces) or pieces[at + 1].text != "/"):
+        return 0  # Mg is magnesium, unless it is written "Mg/l"
+    best, texts, links = 0, [], words("link")
+    for end in range(at + 1, min(len(pieces), at + _UNIT_TOKENS) + 1):
+        piece = pieces[end - 1]
+        if piece.kind == "sep" or piece.end - first.start > LONGEST_UNIT:
+            break
+        gap = "" if end == at + 1 or pieces[end - 2].end == piece.start else " "
+        text = "".join(texts) + gap + piece.text
+        if _closes(text) and unit_form(text) and not _begins_next(pieces, at, end):
+            best = end
+        if end == at + 1 or piece.kind != "word" or normal(piece.text) not in links:
+            texts.append(gap + piece.text)  # a word that only links a unit to what it is counted as is passed over
+    return best
+
+
+def _begins_next(pieces: list[Token], at: int, end: int) -> bool:
+    """Whether the last piece is rather the name of what comes next: "Ca 92 mg/l Mg 18 mg/l"."""
+    if end == at + 1 or end == len(pieces) or not _is_symbol(pieces[end - 1].text):
+        return False
+    return pieces[end].kind in ("number", "range") or pieces[end].text in (":", "=")
+
+
+def _is_symbol(text: str) -> bool:
+    """Whether a text, written exactly so, is the symbol of something measured."""
+    node = vocabulary.names().steps.get(f"={text}")
+    return node is not None and node.name is not None and ":" not in node.name.field
 
 
 def _closes(text: str) -> bool:
@@ -57,13 +76,12 @@ def _closes(text: str) -> bool:
 
 
 def _without_links(run: list[Token]) -> str:
-    """The text of a run, without the words that only link a unit to what it is counted as."""
+    """The text of a unit, without the words that only link it to what it is counted as."""
     texts, links = [], words("link")
     for index, piece in enumerate(run):
         if piece.kind == "word" and 0 < index < len(run) - 1 and normal(piece.text) in links:
             continue
-        gap = "" if index == 0 or run[index - 1].end == piece.start else " "
-        texts.append(gap + piece.text)
+        texts.append(("" if index == 0 or run[index - 1].end == piece.start else " ") + piece.text)
     return "".join(texts)
 
 
@@ -108,14 +126,15 @@ def _name_at(pieces: list[Token], at: int) -> tuple[Name | None, int]:
 
 def _classified(token: Token) -> Token:
     if token.kind == "word":
-        return replace(token, kind=_kind_of(token.text))
-    if token.kind == "charge":
-        return replace(token, kind="sign")
-    if token.kind == "sign" and token.text in "±@":
-        return replace(token, kind="limit" if token.text == "±" else "at")
+        token.kind = _kind_of(token.text)
+    elif token.kind == "charge":
+        token.kind = "sign"
+    elif token.kind == "sign" and token.text in "±@":
+        token.kind = "limit" if token.text == "±" else "at"
     return token
 
 
+@lru_cache(maxsize=4096)
 def _kind_of(word: str) -> str:
     form = normal(word)
     return next((kind for kind in ("limit", "at", "changes", "harmless", "link") if form in words(kind)), "word")

@@ -147,14 +147,11 @@ def unit_forms() -> dict[str, bool]:
 
 @cache
 def _unit_starts() -> frozenset[str]:
+    """Plain forms of the first words of all units that count."""
     texts = [text for quantity in _QUANTITIES for unit in REGISTRY[quantity] for text in (unit.symbol, *unit.aliases)]
-    own = [
-        text
-        for row in read_table("report_words").rows
-        if row["kind"].startswith("unit:")
-        for text in row["words"].split("|")
-    ]
-    return frozenset(plain(cut(fold(text))[0].text) for text in (*texts, *own) if text.strip()) - {""}
+    for row in read_table("report_words").rows:
+        texts += row["words"].split("|") if row["kind"].startswith("unit:") else []
+    return frozenset(plain(cut(fold(text))[0].text) for text in texts if text.strip() and unit_form(text)) - {""}
 
 
 @lru_cache(maxsize=8192)

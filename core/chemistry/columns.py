@@ -12,7 +12,7 @@ from core.chemistry.equilibrium import ITERATIONS, State, solve
 from core.chemistry.model import ALWAYS, LN10, C, H, Model, model_for
 from core.chemistry.problem import CLOSED, KNOWN_PH_ALK, KNOWN_PH_DIC, NOTHING, OPEN, Closure, Problem
 from core.chemistry.reactions import GAS_CONSTANTS
-from core.chemistry.solution import IONS, TOTALS, Solution, Value, solved
+from core.chemistry.solution import IONS, TOTALS, Solution, Value, common_shape, solved
 from core.chemistry.thermodynamics import evaluate
 from core.errors import InputError
 
@@ -78,7 +78,7 @@ class Columns:
 
 def columns(solution: Solution, data: str | None = None, *others: Value) -> Columns:
     """The fields of a water as flat columns; `others` only widen the shape they broadcast to."""
-    shape = np.broadcast_shapes(solution.shape, *(np.shape(o) for o in others))
+    shape = common_shape(np.empty(solution.shape), *others)
     present = {IONS[name]: value for name, value in solution.items() if name in IONS}
     components = tuple(c for c in IONS.values() if c in present or c in ALWAYS)
     totals = np.zeros((len(components), int(np.prod(shape, dtype=int))))
@@ -116,7 +116,7 @@ def _set_aside_unknown(made: Columns, why: str | NDArray[np.object_]) -> None:
     if not unknown.any():
         return
     told = np.broadcast_to(np.asarray(why, dtype=object), made.shape).reshape(-1)
-    made.why[unknown] = [REASONS.index(reason) if reason else UNKNOWN for reason in told[unknown]]
+    made.why[unknown] = [REASONS.index(said) if said in REASONS[1:] else UNKNOWN for said in told[unknown]]
     made.totals[:, unknown] = 0.0
     for part, plain in (
         (made.temp_c, 25.0),

@@ -106,6 +106,13 @@ class _Batch:
         self.x, self.strength, self.ln_water = self.x[:, live], self.strength[live], self.ln_water[live]
         self.partner = self.partner[:, live]
 
+    def take(self, rows: NDArray[np.intp], other: _Batch, chosen: NDArray[np.bool_]) -> None:
+        """Put waters of another batch where they belong in this one."""
+        self.x[:, rows] = other.x[:, chosen]
+        self.strength[rows] = other.strength[chosen]
+        self.ln_water[rows] = other.ln_water[chosen]
+        self.partner[:, rows] = other.partner[:, chosen]
+
     def tie(self) -> None:
         """Put the activities that gas or solids hold where they must be."""
         if self.problem.ln_gas is not None:
@@ -195,12 +202,8 @@ def _solve_chunk(problem: Problem) -> State:
             done = batch.step()
             if done.any():
                 fresh = done & ~converged[where]
-                rows = where[fresh]
-                converged[rows] = True
-                final.x[:, rows] = batch.x[:, fresh]
-                final.strength[rows] = batch.strength[fresh]
-                final.ln_water[rows] = batch.ln_water[fresh]
-                final.partner[:, rows] = batch.partner[:, fresh]
+                final.take(where[fresh], batch, fresh)
+                converged[where[fresh]] = True
                 live = ~converged[where]
                 left = np.count_nonzero(live)
                 if left == 0:

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from core.chemistry.solution import HIGHEST, Solution, Value, number, within
+from core.chemistry.solution import HIGHEST, Solution, Value, common_shape, number, within
 
 Floats = NDArray[np.float64]
 
@@ -53,6 +53,7 @@ def complete(
     share = within("magnesium_share", share, 0.0, 1.0, "")
     alk = within("alkalinity", number("alkalinity", alkalinity), 0.0, HIGHEST, "meq/kg")
     said = []
+    common_shape(hard, share, alk, 0.0 if conductivity is None else number("conductivity", conductivity))
     if magnesium_share is None:
         said.append(
             f"Magnesium was taken as {100 * MAGNESIUM_SHARE:.0f} % of the hardness by moles, the rest as calcium."

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from core.chemistry.columns import conserved, resolved
-from core.chemistry.solution import HIGHEST, TOTALS, Solution, Value, number, within
+from core.chemistry.solution import HIGHEST, TOTALS, Solution, Value, common_shape, number, within
 from core.chemistry.thermodynamics import check_data
 from core.errors import InputError
 
@@ -23,6 +23,7 @@ def mix(solutions: Sequence[Solution], shares: Sequence[ArrayLike] | ArrayLike, 
     waters = list(solutions)
     parts = _parts(waters, shares)
     chosen = check_data(data) if data else _common_data(waters)
+    common_shape(*parts, *(np.empty(water.shape) for water in waters))
     whole = sum(parts)
     if np.any(np.asarray(whole) == 0.0):
         raise InputError("shares", 0.0, "The shares add up to zero; at least one must be above zero.")

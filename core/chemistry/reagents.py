@@ -6,10 +6,11 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from types import MappingProxyType
 
+import numpy as np
 from numpy.typing import ArrayLike
 
 from core.chemistry.columns import conserved, resolved
-from core.chemistry.solution import HIGHEST, TOTALS, Solution, Value, number, within
+from core.chemistry.solution import HIGHEST, TOTALS, Solution, Value, common_shape, number, within
 from core.chemistry.thermodynamics import check_data
 from core.constants import molar_mass
 from core.errors import InputError
@@ -62,6 +63,7 @@ def add(solution: Solution, *, data: str | None = None, **amounts: ArrayLike) ->
         if name not in REAGENTS:
             raise InputError(name, amount, f"{name!r} is not a chemical known here; accepted: {', '.join(REAGENTS)}.")
         dose = within(name, number(name, amount), 0.0, HIGHEST, "mmol/kg")
+        common_shape(np.empty(solution.shape), *fields.values(), dose)
         for field, moles in REAGENTS[name].adds.items():
             fields[field] = fields[field] + moles * dose
     return resolved(Solution(temp_c=solution.temp_c, data=chosen, why=why, **fields))

@@ -156,9 +156,12 @@ def _checked(name: str, value: ArrayLike) -> Value:
 
 
 def _shape(solution: Solution) -> tuple[int, ...]:
-    shapes = {v.shape for n in _NUMBERS if isinstance(v := getattr(solution, n), np.ndarray)}
-    if not shapes:
-        return ()
+    return common_shape(*(v for n in _NUMBERS if isinstance(v := getattr(solution, n), np.ndarray)))
+
+
+def common_shape(*values: Value) -> tuple[int, ...]:
+    """Shape that values broadcast to, or InputError if they do not fit together."""
+    shapes = {np.shape(v) for v in values}
     try:
         return np.broadcast_shapes(*shapes)
     except ValueError:

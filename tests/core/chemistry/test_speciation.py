@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from core.chemistry import Solution, at_temperature, speciate, to_saturation
+from core.chemistry import Solution, add, at_temperature, mix, speciate, to_saturation
 from core.chemistry.thermodynamics import log_k
 from core.errors import InputError
 
@@ -70,6 +70,21 @@ def test_open_water_keeps_alkalinity():
     assert_allclose(aired.p_co2, 4.2e-4, rtol=1e-8)
     assert aired.ph > closed.ph
     assert aired.dic < closed.dic
+
+
+@pytest.mark.parametrize(
+    "call",
+    [
+        lambda w: at_temperature(w, [10.0, 20.0]),
+        lambda w: speciate(w, p_co2=[1e-3, 1e-2]),
+        lambda w: add(w, lime=[1.0, 2.0]),
+        lambda w: mix([w, w], [[0.5, 0.5], 0.5]),
+    ],
+)
+def test_shapes_that_do_not_fit(call):
+    """Arrays that do not broadcast together are refused in a sentence, not by numpy."""
+    with pytest.raises(InputError, match="do not fit together"):
+        call(Solution(**HARD | {"ca": [1.0, 2.0, 3.0]}))
 
 
 def test_unknown_pressure_is_alone():

@@ -54,6 +54,7 @@ def _assumed(parts: Iterable[Part], display: Display) -> str:
     for part in parts:
         for assumption in part.assumptions:
             named = FIELDS.get(assumption.field) or CHOICES.get(assumption.field)
-            label = named.label if named else assumption.field
-            found[assumption.field] = f"{label} {display.show(assumption.amount)}"
+            label = named.label if named else "Other ions"
+            shown = "" if assumption.amount is None else f" {display.show(assumption.amount)}"
+            found[assumption.field] = f"{label}{shown}"
     return "; ".join(found.values())

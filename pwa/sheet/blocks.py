@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
-from pwa.sheet.data import Block, Figure, Points, Said, Scale, Signature, Table
-from pwa.sheet.page import Box, Ink, Mark, Piece, Strip
+from pwa.sheet.data import Beside, Block, Figure, Points, Said, Scale, Signature, Table
+from pwa.sheet.page import Box, Ink, Mark, Piece, Strip, moved_piece
 from pwa.sheet.type import BODY, FIGURE, FINE, LEAD, SMALL, TECHNICAL, UNIT, Measure, Style, lines_of
 
 HANG = 14.0  # of a sign, a dash or a number
@@ -52,6 +52,8 @@ class Setter:
         """A block as strips."""
         if isinstance(block, Figure):
             return self._figure(block)
+        if isinstance(block, Beside):
+            return self._beside(block)
         if isinstance(block, Said):
             return self._said(block)
         if isinstance(block, Points):
@@ -60,10 +62,12 @@ class Setter:
             return TableSetter(self, block).strips()
         if isinstance(block, Signature):
             return [self._signature(block)]
+        if not block.text.strip():
+            return []
         style = {"lead": self.style(LEAD), "body": self.body, "small": self.fine}[block.style]
         return self.paragraph(block.text, style)
 
-    def paragraph(self, text: str, style: Style, x: float = 0.0, before: float = 5.0) -> list[Strip]:
+    def paragraph(self, text: str, style: Style, x: float = 0.0, before: float = 4.0) -> list[Strip]:
         """Lines of running text, none left alone at the foot or the head of a page."""
         lines = lines_of(text, style, self.width - x, self.measure)
         return _paragraph([(Ink(x, _baseline(style), line, style),) for line in lines], style, before * self.scale)
@@ -79,7 +83,7 @@ class Setter:
         head: tuple[Mark, ...] = (Ink(0.0, base, sign, strong), Ink(hang, base, lead, strong))
         rows: list[tuple[Mark, ...]] = [(*head, Ink(hang + first, base, lines[0], style))]
         rows += [(Ink(hang, base, line, style),) for line in lines[1:]]
-        return _paragraph(rows, style, 5.0 * self.scale)
+        return _paragraph(rows, style, 3.6 * self.scale)
 
     def _points(self, block: Points) -> list[Strip]:
         style, hang = self.body, (HANG + 4.0 if block.numbered else HANG) * self.scale
@@ -95,28 +99,47 @@ class Setter:
 
     def _figure(self, block: Figure) -> list[Strip]:
         label, figure, unit = self.style(SMALL), self.style(FIGURE), self.style(UNIT)
-        top = _baseline(label)
-        base = label.leading + _baseline(figure)
-        across = self.measure.width(block.number, figure) + 5.0 * self.scale
+        names = lines_of(block.label, label, self.width, self.measure)
         marks: list[Mark] = [
-            Ink(0.0, top, block.label, label),
-            Ink(0.0, base, block.number, figure),
-            Ink(across, base, block.unit, unit),
+            Ink(0.0, at * label.leading + _baseline(label), name, label) for at, name in enumerate(names)
         ]
+        top = len(names) * label.leading
+        base = top + _baseline(figure)
+        across = self.measure.width(block.number, figure) + 5.0 * self.scale
+        marks += [Ink(0.0, base, block.number, figure), Ink(across, base, block.unit, unit)]
+        height = top + figure.leading
         if block.tone in SIGNS:
             sign, word, colour = SIGNS[block.tone]
             strong = replace(self.body, colour=colour, bold=True)
             text = f"{sign} {word}"
-            marks.append(Ink(self.width - self.measure.width(text, strong), base, text, strong))
-        height = label.leading + figure.leading
-        strips = [
-            Strip(height, (Piece("P", tuple(marks)),), before=9.0 * self.scale, keep=bool(block.words or block.scale))
-        ]
+            wide = self.measure.width(text, strong)
+            if across + self.measure.width(block.unit, unit) + BETWEEN + wide <= self.width:
+                marks.append(Ink(self.width - wide, base, text, strong))
+            else:
+                marks.append(Ink(0.0, height + _baseline(strong), text, strong))
+                height += strong.leading
+        more = bool(block.words or block.scale)
+        strips = [Strip(height, (Piece("P", tuple(marks)),), before=9.0 * self.scale, keep=more)]
         if block.words:
             words = self.paragraph(block.words, self.style(LEAD), before=0.0)
             strips += [replace(strip, keep=True) for strip in words] if block.scale else words
         if block.scale is not None:
             strips.append(self._scale(block.scale))
+        return strips
+
+    def _beside(self, block: Beside) -> list[Strip]:
+        """Two answers in a row, each read as a whole before the next."""
+        gap = 2.0 * BETWEEN
+        half = replace(self, width=(self.width - gap) / 2.0)
+        strips = []
+        for at in range(0, len(block.figures), 2):
+            stacks = [_stacked(half.strips(figure)) for figure in block.figures[at : at + 2]]
+            pieces = [
+                moved_piece(piece, side * (half.width + gap), 0.0)
+                for side, stack in enumerate(stacks)
+                for piece in stack.pieces
+            ]
+            strips.append(Strip(max(stack.height for stack in stacks), tuple(pieces), before=9.0 * self.scale))
         return strips
 
     def _scale(self, scale: Scale) -> Strip:
@@ -158,16 +181,19 @@ class Setter:
         return marks, len(ends)
 
     def _signature(self, block: Signature) -> Strip:
-        height, style, fine = WRITING_LINE * self.scale, self.body, self.fine
-        middle = 0.6 * self.width
+        style, fine, middle = self.body, self.fine, 0.6 * self.width
+        parts = ((0.0, middle - 10.0, block.name, "Name"), (middle, self.width, block.date, "Date"))
+        lines = [lines_of(text, style, right - left, self.measure) for left, right, text, _ in parts]
+        height = max(WRITING_LINE * self.scale, max(map(len, lines)) * style.leading + 6.0)
         pieces = []
-        for left, right, text, word in (
-            (0.0, middle - 10.0, block.name, "Name"),
-            (middle, self.width, block.date, "Date"),
-        ):
+        for (left, right, _, word), written in zip(parts, lines, strict=True):
+            top = height - 4.0 - len(written) * style.leading
             marks: list[Mark] = [Box(left, height, right - left, 0.7, "edge")]
-            if text:
-                marks.append(Ink(left, height - 4.0, text, style))
+            marks += [
+                Ink(left, top + at * style.leading + _baseline(style), line, style)
+                for at, line in enumerate(written)
+                if line
+            ]
             marks.append(Ink(left, height + _baseline(fine), word, fine))
             pieces.append(Piece("P", tuple(marks)))
         return Strip(height + fine.leading + 2.0, tuple(pieces), before=8.0)
@@ -257,6 +283,20 @@ class TableSetter:
 def _baseline(style: Style) -> float:
     """From the top of a line to its baseline."""
     return (style.leading - style.size) / 2.0 + 0.8 * style.size
+
+
+def _stacked(strips: Sequence[Strip]) -> Strip:
+    """Strips as one, which is not broken; lines of a paragraph become one piece again."""
+    pieces: list[Piece] = []
+    y = 0.0
+    for at, strip in enumerate(strips):
+        y += strip.before if at else 0.0
+        own = [moved_piece(piece, 0.0, y) for piece in strip.pieces]
+        if strip.follows and own:
+            pieces[-1] = replace(pieces[-1], marks=pieces[-1].marks + own.pop(0).marks)
+        pieces += own
+        y += strip.height
+    return Strip(y, tuple(pieces))
 
 
 def _paragraph(rows: Sequence[tuple[Mark, ...]], style: Style, before: float) -> list[Strip]:

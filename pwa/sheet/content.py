@@ -18,14 +18,15 @@ from core.job.offer import Offer
 from core.job.prices import PriceBook
 from core.job.record import Job
 from core.job.signoff import SignOff
-from pwa.sheet.data import Block, Figure, Firm, Said, Scale, Section, SheetData, Signature, Table, Text
+from pwa.sheet.data import Beside, Block, Figure, Firm, Said, Scale, Section, SheetData, Signature, Table, Text
 from pwa.sheet.money import money_text, plain_number
 from pwa.sheet.technical import technical_sections
 from pwa.state.display import Display
 
 FOUND = ("water", "demand", "scale")  # sections that say how things are; all others say what is proposed
-DOES = ("interval", "salt_year", "water_year", "sodium", "sodium_added", "potassium")  # answers a customer asks for
-SIGNS = {"met": "good", "not met": "bad", "cannot tell": "watch", "not read": "note"}
+DOES = ("interval", "sodium", "sodium_added", "potassium")  # answers a customer asks for
+IN_COSTS = ("salt_year", "water_year")  # those that stand among the costs where there is an offer
+SIGNS = {"met": "✓", "not met": "✗", "cannot tell": "!"}
 ROOM = 0.12  # of the span, left free at both ends of an answer's line
 
 LOCAL = (
@@ -61,7 +62,7 @@ def sheet_of(
     front = [
         _section("What was found", _found(parts, display)),
         _section("What is proposed", _proposed(parts, display)),
-        _section("What it does", _does(parts, display)),
+        _section("What it does", _does(parts, display, () if reckoned else IN_COSTS)),
         _section("What it costs", _costs(offer, reckoned, display) if offer and reckoned else ()),
         _section("What was measured afterwards", _signed(signed, display) if signed else ()),
         _section("What to watch", _watch(parts)),
@@ -137,22 +138,24 @@ def _found(parts: Mapping[str, Part], display: Display) -> list[Block]:
         blocks += [
             Said(answer.tone, f"{answer.label} {display.show(answer.amount)}. {display.say(answer.words)}")
             for answer in list(part.answers.values())[1:]
-            if answer.tone in ("watch", "bad")
+            if answer.tone == "bad" or (answer.tone == "watch" and key == "water")
         ]
     return blocks
 
 
 def _proposed(parts: Mapping[str, Part], display: Display) -> list[Block]:
     headlines = [part.headline for key, part in parts.items() if key not in FOUND and part.headline is not None]
-    return [figure_of(headline, display) for headline in headlines]
+    figures = tuple(figure_of(headline, display) for headline in headlines)
+    return list(figures) if len(figures) < 2 else [Beside(figures)]
 
 
-def _does(parts: Mapping[str, Part], display: Display) -> list[Block]:
+def _does(parts: Mapping[str, Part], display: Display, more: tuple[str, ...]) -> list[Block]:
+    names = (*DOES, *more)
     found: dict[str, Answer] = {}
     for key, part in parts.items():
         if key not in FOUND:
-            found |= {name: answer for name, answer in part.answers.items() if name in DOES and name not in found}
-    shown = [found[name] for name in DOES if name in found]
+            found |= {name: answer for name, answer in part.answers.items() if name in names and name not in found}
+    shown = [found[name] for name in names if name in found]
     cells = [(answer.label, display.show(answer.amount)) for answer in shown]
     pairs = [(*one, "", *other) for one, other in zip_longest(cells[::2], cells[1::2], fillvalue=("", ""))]
     said = [
@@ -160,7 +163,7 @@ def _does(parts: Mapping[str, Part], display: Display) -> list[Block]:
         for answer in shown
         if answer.tone in ("watch", "bad")
     ]
-    return [Table(("",) * 5, tuple(pairs), (0.29, 0.18, 0.02, 0.29, 0.18), frozenset({1, 4})), *said] if pairs else []
+    return [Table(("",) * 5, tuple(pairs), (0.34, 0.14, 0.02, 0.29, 0.17), frozenset({1, 4})), *said] if pairs else []
 
 
 def _watch(parts: Mapping[str, Part]) -> list[Block]:
@@ -244,7 +247,9 @@ def _signed(signed: Signed, display: Display) -> list[Block]:
     for check in signed.result.checks:
         if check.reading is not None:
             shown = display.show(Amount(check.reading.value, check.unit, check.quantity))
-            rows.append((check.label, shown, f"{check.verdict.capitalize()}\n{display.say(check.words)}"))
+            rows.append(
+                (check.label, shown, f"{SIGNS[check.verdict]} {check.verdict.capitalize()}\n{display.say(check.words)}")
+            )
     table = Table(("", "Read", "Against what was promised"), tuple(rows), (0.36, 0.18, 0.46), frozenset({1}))
     explained: list[Block] = []
     if signed.result.explanation is not None:

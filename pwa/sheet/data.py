@@ -38,6 +38,13 @@ class Figure:
 
 
 @dataclass(frozen=True, slots=True)
+class Beside:
+    """Answers side by side, two in a row."""
+
+    figures: tuple[Figure, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class Text:
     """A paragraph."""
 
@@ -80,7 +87,7 @@ class Signature:
     date: str = ""
 
 
-Block = Figure | Text | Said | Points | Table | Signature
+Block = Figure | Beside | Text | Said | Points | Table | Signature
 
 
 @dataclass(frozen=True, slots=True)

@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import warnings
 from collections.abc import Iterator, Set
-from contextlib import ExitStack, contextmanager
+from contextlib import ExitStack, closing, contextmanager
 from dataclasses import dataclass, fields, is_dataclass, replace
 from datetime import UTC, datetime
 from functools import lru_cache
@@ -48,7 +48,11 @@ class Drawn:
 
 def draw_sheet(data: SheetData) -> Drawn:
     """A sheet as a PDF."""
-    paper = Paper(data)
+    with closing(Paper(data)) as paper:
+        return _drawn(data, paper)
+
+
+def _drawn(data: SheetData, paper: Paper) -> Drawn:
     notes = list(data.notes)
     logo = None
     if data.firm.logo:
@@ -88,7 +92,9 @@ class Paper:
         self._pdf.set_producer(data.made_with)
         self._pdf.set_lang("en")
         self._pdf.set_creation_date(_day(data.day))
-        self._widths: dict[tuple[str, float], float] = {}
+        self._advance = self._pdf.fonts[
+            FONT
+        ].cw  # of each sign, in thousandths of the size; the font is not kerned here
 
     @property
     def signs(self) -> Set[int]:
@@ -97,11 +103,8 @@ class Paper:
 
     def width(self, text: str, style: Style) -> float:
         """Width of a text in one line."""
-        key = (text, style.size)
-        if key not in self._widths:
-            self._pdf.set_font_size(style.size)
-            self._widths[key] = self._pdf.get_string_width(text)
-        return self._widths[key] + (STRONGER * style.size if style.bold else 0.0)
+        thousandths = sum(map(self._advance.__getitem__, map(ord, text)))
+        return (thousandths / 1000.0 + (STRONGER if style.bold else 0.0)) * style.size
 
     def draw(self, page: Page, logo: Logo | None) -> None:
         """Add a page."""
@@ -114,6 +117,10 @@ class Paper:
     def finish(self) -> bytes:
         """The file."""
         return bytes(self._pdf.output())
+
+    def close(self) -> None:
+        """Let go of the font's file."""
+        self._pdf.fonts[FONT].close()
 
     @contextmanager
     def _tagged(self, piece: Piece) -> Iterator[None]:

@@ -10,11 +10,11 @@ from collections.abc import Sequence
 from dataclasses import replace
 
 from pwa.sheet.blocks import Setter
-from pwa.sheet.data import Section, SheetData
+from pwa.sheet.data import Firm, Section, SheetData
 from pwa.sheet.page import GUTTER, MARGIN, SIDE, TOP, Box, Flow, Ink, Mark, Page, Picture, Piece, Strip
 from pwa.sheet.type import FIRM, LABEL, RUNNING, SMALL, SUBTITLE, TITLE, Measure, Style, lines_of
 
-SIZES = (1.0, 0.95, 0.9, 0.85, 0.8)  # tried for the front until it keeps to one page
+SIZES = (1.0, 0.96, 0.92, 0.88, 0.84, 0.8)  # tried for the front until it keeps to one page
 LONG_FRONT = 0.9  # the size of a front that needs more
 LOGO = (130.0, 44.0)  # the room a logo has
 
@@ -42,13 +42,8 @@ def _front(data: SheetData, measure: Measure, logo: tuple[int, int] | None, size
 def _head(flow: Flow, data: SheetData, measure: Measure, logo: tuple[int, int] | None, size: float) -> None:
     """The firm with its logo, a rule with one strong stretch, the title; all on a ground of chalk."""
     top, width = flow.y, flow.full_width
-    beside = width - (LOGO[0] + 20.0 if logo else 0.0)
     marks: list[Mark] = []
-    y = top
-    if data.firm.name:
-        y = _set(marks, data.firm.name, FIRM.scaled(size), SIDE, y, beside, measure)
-    for line in data.firm.lines:
-        y = _set(marks, line, SMALL.scaled(size), SIDE, y, beside, measure)
+    y = _firm(marks, flow, data.firm, measure, logo is not None, size)
     if marks:
         flow.put([Piece("P", tuple(marks))])
     if logo:
@@ -71,6 +66,21 @@ def _head(flow: Flow, data: SheetData, measure: Measure, logo: tuple[int, int] |
     y += 9.0 * size
     flow.pages[0].pieces.insert(0, Piece("", (Box(0.0, 0.0, flow.width, y, "ground"),)))
     flow.advance(y - flow.y + 1.0)
+
+
+def _firm(marks: list[Mark], flow: Flow, firm: Firm, measure: Measure, logo: bool, size: float) -> float:
+    """Name and lines of the firm: the lines at the right, or under the name where a logo has their place."""
+    half = (flow.full_width - 20.0) / 2.0
+    room = flow.full_width - LOGO[0] - 20.0 if logo else half if firm.lines else flow.full_width
+    y = _set(marks, firm.name, FIRM.scaled(size), SIDE, flow.y, room, measure) if firm.name else flow.y
+    if logo:
+        for line in firm.lines:
+            y = _set(marks, line, SMALL.scaled(size), SIDE, y, room, measure)
+        return y
+    below, style = flow.y, SMALL.scaled(size)
+    for line in [part for text in firm.lines for part in lines_of(text, style, half, measure)]:
+        below = _set(marks, line, style, SIDE + flow.full_width - measure.width(line, style), below, half, measure)
+    return max(y, below)
 
 
 def _heading(flow: Flow, text: str, measure: Measure) -> None:
@@ -99,7 +109,7 @@ def _sections(flow: Flow, sections: Sequence[Section], measure: Measure, size: f
         tall = _set(label, section.title, LABEL.scaled(size), 0.0, 0.0, MARGIN, measure)
         shown = technical or section is not sections[0]  # the ground of the head ends just above the first
         rule = Piece("", (Box(SIDE, 0.0, flow.full_width, 0.6, "edge"),) if shown else ())
-        space = 8.5 * size
+        space = 7.5 * size
         chain = sum(strip.before + strip.height for strip in strips[: 1 + _kept(strips)])
         if flow.y + 2 * space + max(tall, chain) > flow.bottom:
             flow.turn()

@@ -143,8 +143,8 @@ def _unpacked(found: _Chunks) -> bytes:
     """The filtered rows; never more of them than the picture has."""
     size = (_row_bytes(found) + 1) * found.height
     unpacker = zlib.decompressobj()
-    rows = unpacker.decompress(found.packed, size)
-    if len(rows) != size:
+    rows = unpacker.decompress(found.packed, size + 1)
+    if len(rows) != size or not unpacker.eof:
         raise ValueError
     return rows
 
@@ -152,9 +152,10 @@ def _unpacked(found: _Chunks) -> bytes:
 def _with_mask(found: _Chunks) -> Logo:
     if found.width * found.height > MOST_UNPACKED:
         raise LogoError("The logo is a large PNG with transparency. Save it smaller, or without transparency.")
-    if found.bits != 8:
-        raise LogoError("The logo is a PNG of few colours with transparency. Save it with 8 bits a channel.")
+    if found.bits != 8 and found.colour != 3:
+        raise LogoError("The logo is a PNG of few greys with transparency. Save it with 8 bits a channel.")
     rows = _unfiltered(_unpacked(found), _row_bytes(found), _CHANNELS[found.colour])
+    rows = [_spread(row, found) for row in rows] if found.bits != 8 else rows
     colours, mask = zip(*(_parted(row, found) for row in rows), strict=True)
     channels = len(colours[0]) // found.width
     return Logo(
@@ -167,6 +168,14 @@ def _with_mask(found: _Chunks) -> Logo:
         zlib.compress(b"".join(b"\0" + row for row in colours)),
         mask=zlib.compress(b"".join(b"\0" + row for row in mask)),
     )
+
+
+def _spread(row: bytes, found: _Chunks) -> bytes:
+    """A row of a palette with 2, 4 or 16 colours, a byte for each pixel."""
+    each = 8 // found.bits
+    shifts = [8 - found.bits * (at + 1) for at in range(each)]
+    most = (1 << found.bits) - 1
+    return bytes((byte >> shift) & most for byte in row for shift in shifts)[: found.width]
 
 
 def _parted(row: bytes, found: _Chunks) -> tuple[bytes, bytes]:

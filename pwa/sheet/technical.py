@@ -22,9 +22,10 @@ from core.working import Step
 from pwa.sheet.data import Block, Firm, Points, Said, Section, Table, Text
 from pwa.sheet.money import money_text, percent_text, plain_number
 from pwa.state.display import Display
-from pwa.text import format_number, format_quantity
+from pwa.text import NOTHING, format_number, format_quantity
 
-_KEY = re.compile(r"\[([A-Z][A-Z0-9.-]+)\]")
+OTHER = "Other ions"  # an assumption that is not about one entry
+_KEY = re.compile(r"\[([A-Z][A-Z0-9.-]+)(?:, (?:checked|secondary|from memory))?\]")
 MUST_DECIDE = (
     "Whether this work may be done here, who may do it, and what must be registered or inspected.",
     "Backflow protection between the supply and the softener, and its yearly test.",
@@ -124,8 +125,9 @@ def _assumed(parts: Iterable[Part], display: Display, sources: Sources) -> list[
     for key, assumption in found.items():
         named = FIELDS.get(key) or CHOICES.get(key)
         cited = "" if assumption.source == "definition" else f"\n{sources.cite(assumption.source)}"
-        why = f"{assumption.why}{cited}"
-        rows.append((named.label if named else key, display.show(assumption.amount), why))
+        why = f"{sources.in_text(assumption.why)}{cited}"
+        shown = NOTHING if assumption.amount is None else display.show(assumption.amount)
+        rows.append((named.label if named else OTHER, shown, why))
     return [Table(("", "Value", "Why"), tuple(rows), (0.30, 0.20, 0.50), frozenset({1}))] if rows else []
 
 

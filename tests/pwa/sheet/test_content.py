@@ -225,9 +225,7 @@ def test_a_sign_off_is_part_of_the_sheet():
     front = blocks(made.front, "What was measured afterwards")
 
     assert front[-1] == Signature("R. Vale", "4 May 2031")
-    assert ("Softened water, fresh", "3.4\u00a0°dH", "Not met\nPromised: at most 0.56\u00a0°dH.") in front[
-        0
-    ].rows
+    assert ("Softened water, fresh", "3.4\u00a0°dH", "✗ Not met\nPromised: at most 0.56\u00a0°dH.") in front[0].rows
     assert "gets past the resin" in words(front)
     behind = blocks(made.technical, "Sign-off")
     assert any(isinstance(block, Table) and block.heading[1] == "Weight" for block in behind)

@@ -87,8 +87,8 @@ def _solved(closure: Closure, miss: Floats, slopes: Floats) -> Floats:
 def _solved_one_by_one(miss: Floats, slopes: Floats) -> Floats:
     """The same for a few waters, where the calls of the elimination would cost more than its arithmetic."""
     try:
-        step: Floats = np.linalg.solve(slopes.transpose(2, 0, 1), miss.T[:, :, None])[:, :, 0].T
-        return -step
+        step = np.linalg.solve(slopes.transpose(2, 0, 1), miss.T[:, :, None])
+        return -np.asarray(step[:, :, 0].T, dtype=float)
     except np.linalg.LinAlgError:  # a water without answer: it is left unsolved, and says so
         return np.full_like(miss, np.nan)
 

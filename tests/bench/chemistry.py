@@ -80,9 +80,9 @@ def one_water() -> tuple[float, float]:
 
 
 def import_time(statement: str) -> float:
-    """Processor time of an import beyond numpy's, in a fresh interpreter; best of five. [s]"""
+    """Processor time of an import beyond numpy's, in a fresh interpreter; best of nine. [s]"""
     command = [sys.executable, "-c", IMPORT.format(statement)]
-    return min(float(subprocess.run(command, capture_output=True, text=True, check=True).stdout) for _ in range(5))
+    return min(float(subprocess.run(command, capture_output=True, text=True, check=True).stdout) for _ in range(9))
 
 
 def main() -> None:

@@ -21,7 +21,7 @@ CHARGES = {
     "F": -1, "": 0,
 }  # fmt: skip
 
-# log10 K by temperature, computed for a fact sheet from the coefficients of the USGS files; 0 25 60 90 °C
+# log10 K by temperature, worked out elsewhere from the coefficients of the USGS files; 0 25 60 90 °C
 BY_TEMPERATURE = [
     ("calcite", "pb1982", (-8.3814, -8.4798, -8.7588, -9.1217)),
     ("calcite", "usgs2024", (-8.3900, -8.4800, -8.8766, -9.4055)),

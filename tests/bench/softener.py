@@ -75,7 +75,12 @@ def main() -> int:
     use = draw_use(2.0)
     ours, theirs = column_against_library()
     figures = [
-        ("search over every bed, dose and kind", 1000 * best_time(lambda: search(Demand(3.73, 4.1, 37.0))), 3.0, "ms, at most"),
+        (
+            "search over every bed, dose and kind",
+            1000 * best_time(lambda: search(Demand(3.73, 4.1, 37.0))),
+            3.0,
+            "ms, at most",
+        ),
         ("assessment without the column", 1000 * best_time(assessment), 60.0, "ms, at most"),
         ("column, 50 doses x 20 cells", best_time(column_of_doses), 0.5, "s, at most"),
         (

@@ -43,25 +43,29 @@ for _ in range(20):
 def main(rounds: int) -> None:
     """Measure and print."""
     site = build().site
-    with sync_playwright() as playwright, serving(site) as server, tempfile.TemporaryDirectory() as profile:
-        with phone(playwright, Path(profile)) as context:
-            visit = Visit(context)
-            visit.open(server.url, "New job")
-            visit.page.get_by_role("button", name="New job").click()
-            visit.wait_for("Water: answer")
-            visit.page.evaluate("location.hash = location.hash.replace('/water', '/demand')")
-            visit.wait_for("Demand: answer")
-            box = visit.page.get_by_role("textbox", name="Persons", exact=True)
-            box.click()
-            box.fill("4")
-            visit.page.wait_for_timeout(1500)
-            times = []
-            for turn in range(rounds):
-                visit.page.evaluate(f"void (globalThis.__took = ({WATCH})())")
-                visit.page.keyboard.press("Backspace" if turn % 2 else "5")
-                times.append(visit.page.evaluate("globalThis.__took"))
-                visit.page.wait_for_timeout(900)
-            share = visit.python(SHARE)
+    with (
+        sync_playwright() as playwright,
+        serving(site) as server,
+        tempfile.TemporaryDirectory() as profile,
+        phone(playwright, Path(profile)) as context,
+    ):
+        visit = Visit(context)
+        visit.open(server.url, "New job")
+        visit.page.get_by_role("button", name="New job").click()
+        visit.wait_for("Water: answer")
+        visit.page.evaluate("location.hash = location.hash.replace('/water', '/demand')")
+        visit.wait_for("Demand: answer")
+        box = visit.page.get_by_role("textbox", name="Persons", exact=True)
+        box.click()
+        box.fill("4")
+        visit.page.wait_for_timeout(1500)
+        times = []
+        for turn in range(rounds):
+            visit.page.evaluate(f"void (globalThis.__took = ({WATCH})())")
+            visit.page.keyboard.press("Backspace" if turn % 2 else "5")
+            times.append(visit.page.evaluate("globalThis.__took"))
+            visit.page.wait_for_timeout(900)
+        share = visit.python(SHARE)
     good = [took for took in times if took >= 0]
     median, worst = statistics.median(good), max(good)
     print(f"key press to new answer: median {median:.0f} ms, worst {worst:.0f} ms, {len(good)} of {rounds}")

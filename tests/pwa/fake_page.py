@@ -66,8 +66,8 @@ class FakePage:
 
     def controls(self) -> Iterator[Any]:
         """Everything on the page, dialogs included, top views last."""
-        yield from _walk(self.page.views)
-        yield from _walk(self.page._dialogs)
+        yield from walk(self.page.views)
+        yield from walk(self.page._dialogs)
 
     def find(self, kind: type, **wanted: Any) -> Any:
         """The first control of a kind with these properties in the view on top."""
@@ -105,15 +105,16 @@ class FakePage:
         await self.settle()
 
 
-def _walk(node: Any) -> Iterator[Any]:
+def walk(node: Any) -> Iterator[Any]:
+    """A control and everything in it, components looked through."""
     if isinstance(node, list | tuple):
         for part in node:
-            yield from _walk(part)
+            yield from walk(part)
     elif type(node).__name__ == "Component":
-        yield from _walk(node._b)
+        yield from walk(node._b)
     elif isinstance(node, BaseControl):
         yield node
         for name in PARTS:
             value = getattr(node, name, None)
             if isinstance(value, BaseControl | list | tuple):
-                yield from _walk(value)
+                yield from walk(value)

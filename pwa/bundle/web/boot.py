@@ -1,14 +1,14 @@
 """Starts the app in the browser's Python; run by worker.js, with the archives in place."""
 
-import importlib
+import gc
 import random
 import runpy
 import sys
 
+gc.disable()  # nothing that is made while starting is thrown away again
 for archive in ("__LIBRARY_FILE__", "__APP_FILE__"):
     if archive not in sys.path:
         sys.path.insert(0, archive)
-importlib.invalidate_caches()
 
 # A memory image carries the random state of the machine that made it. (Its time.timezone and time.tzname too, which
 # cannot be set again; datetime and time.localtime ask the browser each time.)
@@ -20,3 +20,4 @@ import flet_js  # noqa: E402
 connection.flet_js = flet_js  # in a memory image this is still the stand-in of the build
 
 runpy.run_module("pwa.main", run_name="__main__", alter_sys=False)
+gc.enable()

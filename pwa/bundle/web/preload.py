@@ -10,8 +10,10 @@ import csv  # noqa: F401
 import dataclasses  # noqa: F401
 import datetime  # noqa: F401
 import decimal  # noqa: F401
+import encodings.cp437  # noqa: F401  (how a zip names its files)
 import functools  # noqa: F401
-import importlib.resources  # noqa: F401
+import importlib.resources._adapters
+import importlib.resources.readers  # noqa: F401
 import itertools  # noqa: F401
 import json  # noqa: F401
 import math  # noqa: F401
@@ -43,3 +45,4 @@ del sys.modules["flet_js"]
 import gc  # noqa: E402
 
 gc.collect()
+gc.freeze()  # what is in the image stays: the collector need not look at it again

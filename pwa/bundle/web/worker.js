@@ -96,7 +96,9 @@ async function startPython(image) {
   if (image) {
     const restore = growingTo(CONFIG.snapshot.memory);
     try {
-      return [await loadPyodide({ ...options, _loadSnapshot: await image }), true];
+      const restored = await loadPyodide({ ...options, _loadSnapshot: await image });
+      restored.runPython("import flet; sorted(flet.__name__)"); // an image that fits this engine badly fails here, not later
+      return [restored, true];
     } catch (error) {
       console.warn("The memory image could not be used, starting without it:", String(error));
     } finally {

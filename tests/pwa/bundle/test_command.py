@@ -4,11 +4,10 @@ from __future__ import annotations
 
 import socket
 
-import flet
 import pytest
 
 from pwa import __main__ as command
-from pwa.bundle import node, snapshot
+from pwa.bundle import node
 from pwa.bundle.build import build, is_current
 from pwa.bundle.places import PYODIDE
 
@@ -74,11 +73,3 @@ def test_node_is_found_and_new_enough():
     assert found is not None
     assert node._major_version(found) >= node.OLDEST
     assert (PYODIDE / "pyodide.mjs").exists()
-
-
-def test_what_goes_into_the_memory_image_exists():
-    """Every name listed for the image is one of flet's, listed once."""
-    names = snapshot.controls()
-
-    assert [name for name in names if not hasattr(flet, name)] == []
-    assert len(set(names)) == len(names)

@@ -5,6 +5,7 @@ import io
 import re
 import subprocess
 import sys
+import zipfile
 from contextlib import closing
 from dataclasses import fields, is_dataclass, replace
 from functools import cache
@@ -17,6 +18,7 @@ import pypdfium2
 import pytest
 
 from pwa import theme
+from pwa.bundle.sources import app_files
 from pwa.sheet.data import Scale, SheetData
 from pwa.sheet.draw import KEPT, Paper, draw_sheet
 from pwa.sheet.page import FOOT, PAPERS, SIDE
@@ -366,3 +368,32 @@ def test_an_empty_sheet_is_a_page():
 def test_the_job_of_the_samples_has_all_that_matters():
     """The drawn sheet is of a job with readings of every kind: the tests above see a real one."""
     assert len({entry.source for entry in usual_job().entries.values()}) == 3
+
+
+FROM_ARCHIVE = """
+import sys
+sys.path.insert(0, sys.argv[1])
+import pwa
+assert sys.argv[1] in pwa.__file__, pwa.__file__
+from pwa.sheet.data import SheetData
+from pwa.sheet.draw import draw_sheet
+from pwa.services.handover import qr_codes
+from core.job import Job
+made = draw_sheet(SheetData(title="Größe ₃"))
+print(made.pages, len(made.pdf), qr_codes(Job("x"), "https://x.example/")[0].version)
+"""
+
+
+def test_it_works_from_the_archive_of_the_app(tmp_path):
+    """As the browser has it: the code and the font lie in a zip."""
+    archive = tmp_path / "app.zip"
+    with zipfile.ZipFile(archive, "w") as packed:
+        for place, path in app_files().items():
+            packed.write(path, place)
+    done = subprocess.run(
+        [sys.executable, "-c", FROM_ARCHIVE, str(archive)], cwd=tmp_path, capture_output=True, text=True, check=True
+    )
+    pages_made, size, version = map(int, done.stdout.split())
+    assert pages_made == 1
+    assert size > 3000
+    assert version <= 10

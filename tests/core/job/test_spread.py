@@ -23,7 +23,7 @@ from core.job.spread import SpreadRun, spread, with_bands
 SAMPLES = sorted((Path(__file__).resolve().parents[3] / "sample_tests").glob("*.json"))
 SODIUM_PER_MMOL = 45.97954  # mg/L Na for a mmol/L of hardness: two atomic weights of sodium [IUPAC21]
 NORMAL_KIT = Kit("sharp", "a kit with a normal doubt", ("hardness", "sodium"), "", shape="normal", relative=0.1)
-EXACT = Kit("exact", "no doubt at all", ("hardness", "flow", "iron", "manganese", "daily volume"), "", shape="none")
+EXACT = Kit("exact", "no doubt at all", tuple(FIELDS), "", shape="none")
 EXACT_ENTRIES = {  # a job whose only doubts are those a test adds
     "water.manganese": Entry(0.0, "mg/L Mn", "measured", EXACT.words),
     "water.iron": Entry(0.0, "mg/L Fe", "measured", EXACT.words),
@@ -40,10 +40,16 @@ def shown(amount):
 
 
 def exact_job(**changes):
-    """A job without doubts, entries changed (dots as two underscores), or taken out where None."""
+    """A job without doubts, what it assumes made exact; entries changed (dots as two underscores) or left out if None."""
+    changed = {name.replace("__", "."): entry for name, entry in changes.items()}
     job = Job("test", entries=EXACT_ENTRIES)
-    for name, entry in changes.items():
-        job = job.with_entry(name.replace("__", "."), entry)
+    for key, entry in changed.items():
+        job = job.with_entry(key, entry)
+    for section in ("softener", "blend"):
+        for assumption in getattr(assess(job), section).assumptions:
+            if assumption.amount is not None and assumption.field in FIELDS and assumption.field not in changed:
+                amount = assumption.amount
+                job = job.with_entry(assumption.field, Entry(amount.value, amount.unit, "measured", EXACT.words))
     return job
 
 
@@ -351,7 +357,7 @@ def iron_job(iron):
 
     def bed(volume, mg):
         entries = {"demand.daily_volume": Entry(volume, "L/day", "measured", EXACT.words), "water.iron": mg}
-        job = Job("iron", entries={**EXACT_ENTRIES, **entries})
+        job = Job("iron", entries={**exact_job().entries, **entries})
         return assess(job).softener.headline.amount.value, job
 
     low, high = 500.0, 3000.0

@@ -22,6 +22,7 @@ from core.units import convert
 
 DEFENSIBLE = 0.10  # a gain below this share is within the 10 to 15 % doubt of capacity tables [TRADE-SIZING]
 
+WITHIN_DOUBT = "The difference is within the doubt of the capacity figures."
 LEFT_OUT = (
     "Not counted as a saving: energy, heaters, appliances, soap and clothes. The figures in circulation for them are "
     "contested or come from the trade itself."
@@ -115,10 +116,11 @@ def _cost(quantity: Decimal, price: UnitPrice | None, book: PriceBook) -> Decima
 def compare(offer: Offer) -> Comparison:
     """All options side by side, and the savings of each against the one that costs most to run."""
     columns = tuple(_column(option, offer) for option in offer.options)
-    dearest = _dearest_to_run(columns)
-    others = [at for at in range(len(columns)) if dearest is not None and at != dearest]
-    savings = [saving(at, dearest, columns, offer.book) for at in others if columns[at].option.design is not None]
-    return Comparison(columns, tuple(savings))
+    with_design = [at for at, column in enumerate(columns) if column.option.design]
+    if not with_design:
+        return Comparison(columns, ())
+    dearest = max(with_design, key=lambda at: (_to_run(columns[at]), -at))
+    return Comparison(columns, tuple(saving(at, dearest, columns) for at in with_design if at != dearest))
 
 
 def _column(option: Option, offer: Offer) -> Column:
@@ -128,16 +130,13 @@ def _column(option: Option, offer: Offer) -> Column:
     return Column(option, reckoned, costs, None if year is None else reckoned.gross + offer.years * year)
 
 
-def _dearest_to_run(columns: Sequence[Column]) -> int | None:
-    def weight(at: int) -> tuple[Decimal, float]:
-        costs, design = columns[at].running, columns[at].option.design
-        return ((costs.year if costs else None) or Decimal(0), design.salt_year if design else 0.0)
-
-    with_design = [at for at, column in enumerate(columns) if column.option.design]
-    return max(with_design, key=lambda at: (weight(at), -at), default=None)
+def _to_run(column: Column) -> tuple[Decimal, float]:
+    """What makes an option dear to run: money a year, or while that is not known the salt."""
+    costs, design = column.running, column.option.design
+    return ((costs.year if costs else None) or Decimal(0), design.salt_year if design else 0.0)
 
 
-def saving(option: int, against: int, columns: Sequence[Column], book: PriceBook) -> Saving:
+def saving(option: int, against: int, columns: Sequence[Column]) -> Saving:
     """What one option saves against another in salt, water and money a year, as far as it can be defended.
 
     A gain within the doubt counts as none, a loss always counts; so money is never promised too high.
@@ -150,10 +149,11 @@ def saving(option: int, against: int, columns: Sequence[Column], book: PriceBook
     if not isclose(mine.load, theirs.load, rel_tol=1e-6):
         text = "The two designs take different amounts of hardness out, so their use cannot be compared."
         return Saving(option, against, 0.0, 0.0, None, extra, None, text)
-    salt = _defended(theirs.salt_year, mine.salt_year) if mine.salt == theirs.salt else 0.0
+    same_salt = mine.salt == theirs.salt
+    salt = _defended(theirs.salt_year, mine.salt_year) if same_salt else 0.0
     water = _defended(theirs.water_year, mine.water_year)
-    money = _money_saved(one.running, other.running, salt, water, mine.salt == theirs.salt)
-    why_not = "" if salt > 0.0 or water > 0.0 else "The difference is within the doubt of the capacity figures."
+    money = _money_saved(one.running, other.running, salt, water, same_salt)
+    why_not = "" if salt or water or (money and not same_salt) else WITHIN_DOUBT
     return Saving(option, against, salt, water, money, extra, _payback(extra, money), why_not)
 
 
@@ -165,12 +165,16 @@ def _defended(other: float, mine: float) -> float:
 def _money_saved(
     mine: Running | None, theirs: Running | None, salt: float, water: float, same_salt: bool
 ) -> Decimal | None:
-    if mine is None or theirs is None or mine.year is None or theirs.year is None:
+    if mine is None or theirs is None:
         return None
-    by_salt = theirs.salt_cost - mine.salt_cost
-    if not salt and (same_salt or 0 <= by_salt < Decimal(str(DEFENSIBLE)) * theirs.salt_cost):
+    costs = (mine.salt_cost, theirs.salt_cost, mine.water_cost, theirs.water_cost)
+    if any(cost is None for cost in costs):
+        return None
+    my_salt, their_salt, my_water, their_water = (cost or Decimal(0) for cost in costs)
+    by_salt = their_salt - my_salt
+    if not salt and (same_salt or 0 <= by_salt < Decimal(str(DEFENSIBLE)) * their_salt):
         by_salt = Decimal(0)
-    by_water = theirs.water_cost - mine.water_cost if water else Decimal(0)
+    by_water = their_water - my_water if water else Decimal(0)
     return by_salt + by_water + theirs.service_cost - mine.service_cost
 
 

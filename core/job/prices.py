@@ -163,7 +163,7 @@ def read_decimal(
         raise InputError(
             name, text, f"The {name} is {text.strip()[:40]}; accepted is {written(lowest)} to {written(highest)}."
         )
-    if -value.as_tuple().exponent > places:
+    if -int(value.as_tuple().exponent) > places:
         raise InputError(name, text, f"The {name} {text.strip()[:40]} has more than {places} decimals. Round it.")
     return value + 0
 

@@ -158,10 +158,10 @@ def _flows(promised: Promised, readings: Readings) -> list[tuple[_Promise, Measu
 
 
 def _checked(promise: _Promise, reading: Measured | None) -> Check:
-    common = {"limits": (promise.low, promise.high), "unit": promise.unit, "quantity": promise.quantity}
+    limits, unit, quantity = (promise.low, promise.high), promise.unit, promise.quantity
     if reading is None:
-        words = say("Not read.")
-        return Check(promise.key, promise.label, NOT_READ, words, **common, would_tell=say(promise.ask))
+        ask = say(promise.ask)
+        return Check(promise.key, promise.label, NOT_READ, say("Not read."), limits, unit, quantity, would_tell=ask)
     low, high = band(reading, promise.doubt)
     if promise.low <= low and high <= promise.high:
         verdict = MET
@@ -176,11 +176,13 @@ def _checked(promise: _Promise, reading: Measured | None) -> Check:
         promise.label,
         verdict,
         _words(promise, verdict),
-        **common,
-        reading=reading,
-        band=(low, high),
-        would_tell=would_tell,
-        steps=tuple(work.steps),
+        limits,
+        unit,
+        quantity,
+        reading,
+        (low, high),
+        would_tell,
+        tuple(work.steps),
     )
 
 

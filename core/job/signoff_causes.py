@@ -107,7 +107,8 @@ def _cause(
     key: str, known: Known, weight: float, signs: Mapping[str, Sign], promised: Promised, readings: Readings
 ) -> Cause:
     words, first, steps = remedy(key, promised, readings)
-    speaks_for, speaks_against = [], []
+    speaks_for: list[str] = []
+    speaks_against: list[str] = []
     for name, expected in known.says.items():
         chance = signs[name].chance
         if chance is not None and not 1.0 - SURE < chance < SURE:

@@ -141,12 +141,10 @@ def _share_off(promised: Promised, readings: Readings) -> float | None:
     raw, blend, wanted = readings.raw, readings.blend, promised.raw
     if raw is None or blend is None or wanted is None or promised.blend is None or not wanted.value:
         return None
-    expected = _scaled(raw, promised.blend / wanted.value)
-    doubt = hypot(blend.doubt, expected.doubt)
+    share = promised.blend / wanted.value
+    apart, doubt = blend.value - share * raw.value, hypot(blend.doubt, share * raw.doubt)
     width = promised.blend_within
-    return chance_above(blend.value - expected.value - width, 0.0, doubt) + chance_above(
-        expected.value - width - blend.value, 0.0, doubt
-    )
+    return chance_above(apart, width, doubt) + chance_above(-apart, width, doubt)
 
 
 def _exact(value: float | None) -> Measured | None:

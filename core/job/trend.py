@@ -117,7 +117,7 @@ def trend_steps(work: Working, days: Sequence[float], values: Sequence[float], d
     """The same, its slope and doubt kept as steps of a working."""
     if len(set(days)) < 2:
         raise InputError("visits", len(days), "A line needs visits on two days at least: read again on another day.")
-    inputs = {"days": tuple(days), "values": tuple(values), "doubts": doubts}
+    inputs: dict[str, Any] = {"days": tuple(days), "values": tuple(values), "doubts": doubts}
     _, y, w, middle, level = _centred(**inputs)
     widened = float(birge_ratio(**inputs))
     return Trend(

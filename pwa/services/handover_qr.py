@@ -25,7 +25,7 @@ class QrCode:
 
 def qr_code(prefix: str, code: str) -> QrCode:
     """The code for an address and the digits and capital letters that follow it."""
-    made = segno.make([prefix, code], error=ERROR, micro=False, boost_error=False)
+    made = segno.make([prefix, code], error=ERROR, micro=False, boost_error=False)  # type: ignore[arg-type]  # a list is a text in parts
     rows = tuple(tuple(bool(module) for module in row) for row in made.matrix)
     svg = made.svg_inline(scale=4, border=QUIET, dark="#000000", light="#ffffff", omitsize=True)
     return QrCode(prefix + code, int(made.version), rows, svg)

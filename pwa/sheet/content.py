@@ -232,9 +232,10 @@ def _saving(saving: Saving, names: tuple[str, ...], book: PriceBook, display: Di
         for value, unit, quantity, role, name in gains
         if value
     ]
-    text = f"{one} uses {' and '.join(used)} a year than {other}"
-    if saving.money is not None and saving.money > 0:
-        text += f", and costs {money_text(saving.money, book, display.decimal)} a year less to run"
+    money = f"{money_text(saving.money, book, display.decimal)} a year less to run" if (saving.money or 0) > 0 else ""
+    text = f"{one} uses {' and '.join(used)} a year than {other}" if used else f"{one} costs {money} than {other}"
+    if used and money:
+        text += f", and costs {money}"
     if saving.payback is not None:
         extra = money_text(saving.extra, book, display.decimal)
         years = plain_number(saving.payback, display.decimal)

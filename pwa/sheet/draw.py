@@ -16,12 +16,13 @@ from datetime import UTC, datetime
 from functools import lru_cache
 from importlib.resources import as_file, files
 from pathlib import Path
-from typing import Any
+from typing import Any, cast
 
 with warnings.catch_warnings():
     warnings.simplefilter("ignore")  # it warns where Pillow is missing, as in the browser; `logo` does without
     from fpdf import FPDF
     from fpdf.enums import TextMode
+    from fpdf.fonts import TTFFont
     from fpdf.image_datastructures import RasterImageInfo
 
 from pwa import theme
@@ -99,7 +100,7 @@ class Paper:
     @property
     def signs(self) -> Set[int]:
         """Code points that the font can draw."""
-        return self._pdf.fonts[FONT].cmap.keys()
+        return self._font.cmap.keys()
 
     def width(self, text: str, style: Style) -> float:
         """Width of a text in one line."""
@@ -120,7 +121,7 @@ class Paper:
 
     def close(self) -> None:
         """Let go of the font's file."""
-        self._pdf.fonts[FONT].close()
+        self._font.close()
 
     @contextmanager
     def _tagged(self, piece: Piece) -> Iterator[None]:

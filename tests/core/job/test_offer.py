@@ -273,6 +273,7 @@ def test_kilograms_of_two_salts_are_not_compared():
     got = side_by_side(DESIGN, replace(DESIGN, salt="kcl", salt_year=450.0), book=book).savings[0]
     assert got.salt == 0.0
     assert got.money == D("720.00") - D("126.02")  # 450 × 1.60; 354 × 0.356
+    assert got.why_not == ""
 
 
 def test_three_digits_that_count():

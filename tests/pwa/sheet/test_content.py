@@ -147,6 +147,16 @@ def test_only_defended_savings_are_told():
     assert "Not counted as a saving: energy, heaters" in text
 
 
+def test_two_salts_are_compared_in_money_alone():
+    """Kilograms of two salts do not compare; the sentence is whole all the same."""
+    one, other = offer().options
+    book = replace(BOOK, potassium_salt=UnitPrice(D(40), D(25), "kg"))
+    two = (one, replace(other, name="Potassium", design=replace(one.design, salt="kcl")))
+    text = words(blocks(sheet(offer=Offer(two, book)).front, "What it costs"))
+    assert "“Saving” costs €" in text
+    assert "a year less to run than “Potassium”" in text
+
+
 def test_a_missing_price_is_said():
     """No cost of the years is made up."""
     without = replace(offer(), book=replace(BOOK, salt=None))

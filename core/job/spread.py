@@ -38,6 +38,7 @@ LOW, HIGH = 0.1, 0.9  # the band holds 8 cases of 10
 DRAWS = 200
 ALONE = 20  # cases for each entry on its own
 MOST_DRAWS = 100_000
+_OVER = object()
 
 
 @dataclass(frozen=True, slots=True)
@@ -126,6 +127,8 @@ class SpreadRun:
         self.doubts = {key: held for key, held in found.items() if not held.is_none}
         self._entries = {key: entries[key] for key in self.doubts}
         self._drawn = {key: np.asarray(held.at(_layers(draws, seed, key))) for key, held in self.doubts.items()}
+        self._plain_numbers = _numbers(self.plain)
+        self._plain_decisions = {section: decision_of(part, job) for section, part in self.plain.items()}
         self._tally = _Tally()
         self._alone: dict[str, list[dict[str, Decision]]] = {key: [] for key in self.doubts}
         self._total = draws + alone * len(self.doubts)
@@ -145,10 +148,9 @@ class SpreadRun:
     def step(self, cases: int = 4) -> bool:
         """Assess a few more cases; True while there is more to do."""
         for _ in range(cases):
-            if self.finished:
+            if next(self._work, _OVER) is _OVER:
+                self._done = self._total
                 return False
-            next(self._work)
-            self._done += 1
         return not self.finished
 
     def result(self) -> Spread:
@@ -176,13 +178,27 @@ class SpreadRun:
         for case in range(draws):
             changed = self._with({key: float(values[case]) for key, values in self._drawn.items()})
             self._tally.take(self._parts(assess(changed)), changed)
+            self._done += 1
             yield
-        for key, held in self.doubts.items():
-            for share in (np.arange(alone) + 0.5) / alone:
-                changed = self._with({key: float(held.at(share))})
-                parts = self._parts(assess(changed))
-                self._alone[key].append({section: decision_of(part, changed) for section, part in parts.items()})
-                yield
+        for key in self.doubts:
+            yield from self._alone_cases(key, alone)
+
+    def _alone_cases(self, key: str, alone: int) -> Iterator[None]:
+        """One entry at even quantiles, the outermost first; where those move nothing, the rest is not tried."""
+        shares = (np.arange(alone) + 0.5) / alone
+        order = sorted(range(alone), key=lambda at: -abs(shares[at] - 0.5))
+        moved = False
+        for tried, at in enumerate(order):
+            if tried == 2 and not moved:
+                self._total -= alone - tried
+                self._alone[key] += [self._plain_decisions] * (alone - tried)
+                return
+            changed = self._with({key: float(self.doubts[key].at(shares[at]))})
+            parts = self._parts(assess(changed))
+            moved = moved or _numbers(parts) != self._plain_numbers
+            self._alone[key].append({section: decision_of(part, changed) for section, part in parts.items()})
+            self._done += 1
+            yield
 
     def _with(self, values: Mapping[str, float]) -> Job:
         """The job with some entries at other values."""
@@ -220,6 +236,13 @@ def with_bands(part: Part, found: Spread) -> Part:
             held[key] = (min(ends), max(ends))
     answers = {key: replace(answer, band=held.get(key)) for key, answer in part.answers.items()}
     return replace(part, answers=answers, spread=held)
+
+
+def _numbers(parts: Mapping[str, Part]) -> dict[str, float]:
+    """All answers as plain numbers."""
+    return {
+        f"{key}.{answer.key}": answer.amount.value for key, part in parts.items() for answer in part.answers.values()
+    }
 
 
 def _doubted(job: Job, parts: Mapping[str, Part]) -> dict[str, Entry]:

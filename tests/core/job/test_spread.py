@@ -40,7 +40,7 @@ def shown(amount):
 
 
 def exact_job(**changes):
-    """A job without doubts, what it assumes made exact; entries changed (dots as two underscores) or left out if None."""
+    """A job without doubts, what it assumes made exact; entries changed (dots as two underscores) or None."""
     changed = {name.replace("__", "."): entry for name, entry in changes.items()}
     job = Job("test", entries=EXACT_ENTRIES)
     for key, entry in changed.items():
@@ -189,6 +189,21 @@ def test_a_slice_is_so_many_assessments(monkeypatch):
     while run.step(3):
         pass
     assert len(calls) == 1 + 10 + 2
+
+
+def test_an_entry_that_moves_nothing_is_not_tried_on(monkeypatch):
+    """Where the outermost values of an entry change no answer, the values between are not assessed."""
+    calls = []
+    monkeypatch.setattr(spread_module, "assess", lambda job: calls.append(job) or assess(job))
+    sodium = Entry(30.0, "mg/L Na", "told")
+    run = SpreadRun(exact_job(water__ph=Entry(7.2, "", "told")), 2, alone=20, own=(EXACT,), sections=("softener",))
+    while run.step(7):
+        pass
+    assert len(calls) == 1 + 2 + 2
+    assert (run.share_done, run.finished) == (1.0, True)
+    assert len(run.result().alone["water.ph"]) == 20
+    moving = spread(exact_job(water__sodium=sodium), draws=2, alone=5, own=(EXACT,), sections=("softener",))
+    assert len(moving.alone["water.sodium"]) == 5
 
 
 @pytest.mark.parametrize("draws", [1, 0, -5, 10**9])

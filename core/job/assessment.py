@@ -8,6 +8,9 @@ from core.job.answers import Part
 from core.job.blend import assess_blend
 from core.job.column import assess_column
 from core.job.demand import Demand, assess_demand
+from core.job.dose import Dosing, assess_dose
+from core.job.dose_jars import assess_jars
+from core.job.dose_water import assess_dose_water
 from core.job.options import assess_options
 from core.job.record import Job
 from core.job.run_out import assess_run_out
@@ -61,6 +64,25 @@ class Assessment:
     def blend(self) -> Part:
         """Raw water back into softened."""
         return assess_blend(self.job)
+
+    @cached_property
+    def dose(self) -> Part:
+        """Soda ash, lime or caustic."""
+        return self._dosing.part
+
+    @cached_property
+    def dose_water(self) -> Part:
+        """What the dose does to the water."""
+        return assess_dose_water(self._dosing)
+
+    @cached_property
+    def jars(self) -> Part:
+        """Six jars around the dose."""
+        return assess_jars(self._dosing)
+
+    @cached_property
+    def _dosing(self) -> Dosing:
+        return assess_dose(self.job)
 
     @cached_property
     def _softener(self) -> Softener:

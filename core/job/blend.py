@@ -9,6 +9,7 @@ from core.job.ledger import Ledger
 from core.job.record import Job
 from core.treatment import blending
 from core.treatment.blending import SodiumLimit
+from core.working import Step
 
 
 def assess_blend(job: Job) -> Part:
@@ -77,10 +78,11 @@ def sodium_answers(ledger: Ledger, raw: float, target: float | None) -> list[Ans
         words = say("The sodium of the raw water comes on top: enter it to hold the sum against the limits.")
         return [Answer("sodium_added", "Sodium added", Amount(added, "mg/L Na", "sodium"), words, w.leading_to(added))]
     total = w.step(blending.sodium_after, sodium=sodium, removed=removed)
-    return [_sodium_sum(total, w.leading_to(total))]
+    return [sodium_sum(total, w.leading_to(total))]
 
 
-def _sodium_sum(total: float, steps) -> Answer:
+def sodium_sum(total: float, steps: tuple[Step, ...]) -> Answer:
+    """Sodium at the taps held against limits and advice."""
     over = blending.sodium_limits_exceeded(total)
     binding = [limit for limit in over if limit.kind != "advice"]
     if binding:

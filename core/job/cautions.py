@@ -84,6 +84,90 @@ METALS_IN_SOUR_WATER = Caution(
     "common practice, no source",
 )
 
+CAUSTIC_BURNS = Caution(
+    "caustic_burns",
+    "danger",
+    "Caustic soda burns skin and blinds, lye and beads alike. Goggles, face shield, gloves and apron of rubber; "
+    "running water and an eye wash within reach. Beads go into cold water, slowly, never water onto beads.",
+    "common practice, no source",
+)
+LIME_BURNS = Caution(
+    "lime_burns",
+    "danger",
+    "Lime burns eyes, lungs and wet skin. Tight goggles, a dust mask, gloves and long sleeves; rinse eyes for 15 "
+    "minutes and see a doctor at once.",
+    "common practice, no source",
+)
+SLAKING = Caution(
+    "slaking",
+    "danger",
+    "Quicklime gets hot enough with water to boil it and to start fires. Slake it only in equipment made for it, lime "
+    "into water; keep it dry and away from wood and paper.",
+    "common practice, no source",
+)
+SODA_DUST = Caution(
+    "soda_dust",
+    "care",
+    "Soda ash dust stings eyes and lungs, and its solution is strong lye to the eye: goggles, dust mask, gloves. Stir "
+    "it into water, not water onto it.",
+    "common practice, no source",
+)
+SODIUM_DOSED = Caution(
+    "sodium_dosed",
+    "care",
+    "Soda ash and caustic leave their sodium in the water. People on a sodium-restricted diet, and whoever prepares "
+    "food for infants, need to know; ask a physician.",
+    "EPA-SODIUM",
+)
+NEVER_TOGETHER = Caution(
+    "never_together",
+    "danger",
+    "Keep it apart from acids, chlorine products, alum and iron salts, aluminium and zinc: heat, gas or hydrogen. "
+    "Never use one pump, tank or scoop for two chemicals. Feed lime and soda ash apart: together they set hard.",
+    "common practice, no source",
+)
+CERTIFIED_FEED = Caution(
+    "certified_feed",
+    "care",
+    "For drinking water use chemicals and feed equipment certified for it (NSF/ANSI 60 and 61, EN 12518, EN 896, EN "
+    "897), with an anti-siphon valve, and a switch that stops the pump when the water stops.",
+    "common practice, no source",
+)
+LICENSED_OPERATOR = Caution(
+    "licensed_operator",
+    "care",
+    "Changing the treatment of a public supply needs the approval of its authority and a licensed operator, who tests "
+    "pH, hardness and alkalinity of the treated water daily. Local law comes before anything said here.",
+    "common practice, no source",
+)
+HIGH_PH = Caution(
+    "high_ph",
+    "care",
+    "Dosed water may be far above pH 9.5: nobody drinks or bathes in it until pH is back within the local limits.",
+    "common practice, no source",
+)
+SLUDGE = Caution(
+    "sludge",
+    "note",
+    "Sludge and rinse water are waste with a high pH: where they go is for the local authority to say, never into a "
+    "stream, and into a sewer only with leave.",
+    "common practice, no source",
+)
+CHANGED_SOURCE = Caution(
+    "changed_source",
+    "care",
+    "A change of source or share changes the water in old pipes: deposits, lead and copper may come loose. Change "
+    "slowly, flush, and test at the taps; a public supply asks its authority first.",
+    "common practice, no source",
+)
+CROSS_CONNECTION = Caution(
+    "cross_connection",
+    "care",
+    "Sources are joined only behind check valves and backflow protection by the local code: a private well and a "
+    "public main never without an air gap.",
+    "common practice, no source",
+)
+
 IRON_CARE = 1.0  # mg/L, from where a household softener needs help; common practice, no source
 
 
@@ -107,3 +191,24 @@ def blend_cautions(salt: str) -> tuple[Caution, ...]:
 def scale_cautions() -> tuple[Caution, ...]:
     """What to mind when speaking of lime, heaters and pipes."""
     return (INDICES, METALS_IN_SOUR_WATER)
+
+
+def dose_cautions(chemicals: tuple[str, ...], slaked: bool) -> tuple[Caution, ...]:
+    """What to mind when feeding "soda_ash", "lime" or "caustic"; `slaked`: the lime comes as quicklime."""
+    return (
+        *((CAUSTIC_BURNS,) if "caustic" in chemicals else ()),
+        *((LIME_BURNS,) if "lime" in chemicals else ()),
+        *((SLAKING,) if "lime" in chemicals and slaked else ()),
+        *((SODA_DUST,) if "soda_ash" in chemicals else ()),
+        NEVER_TOGETHER,
+        HIGH_PH,
+        *((SODIUM_DOSED,) if "caustic" in chemicals or "soda_ash" in chemicals else ()),
+        CERTIFIED_FEED,
+        LICENSED_OPERATOR,
+        SLUDGE,
+    )
+
+
+def source_cautions() -> tuple[Caution, ...]:
+    """What to mind when several sources are joined."""
+    return (CHANGED_SOURCE, CROSS_CONNECTION, LICENSED_OPERATOR, NOT_DISINFECTED)

@@ -1,197 +1,19 @@
 """The entries and choices a job may hold: what each is called, what it measures, what is accepted.
 
-The form on the screen, the checks, the assumptions and the file all read this one table, so that an entry is added
-by adding a row here and using it in the assessment.
+The form on the screen, the checks, the assumptions and the file all read these tables, so that an entry is added
+by adding a row here and using it in the assessment. Entries of which a job holds any number ("sources.3.nitrate")
+are made by rule: `field_for` and `choice_for` know both kinds.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
 
+from core.job.dose_fields import DOSE_CHOICES, DOSE_FIELDS
+from core.job.field import DAILY, FLOW, HARD, Choice, Default, Field
+from core.job.source_fields import SOURCE_CHOICES, SOURCE_FIELDS, source_choice, source_field
+from core.job.water_fields import WATER_FIELDS
 from core.treatment.regions import REGIONS
-
-COMMON = "common practice, no source"
-
-# The one unit of each quantity inside the core; a role names a kind of quantity that keeps a unit of its own.
-CORE_UNITS = {
-    "hardness": "mmol/L",
-    "alkalinity": "meq/L",
-    "flow": "L/min",
-    "daily volume": "L/day",
-    "water use": "L/person/day",
-    "volume": "L",
-    "salt dose": "g/L",
-    "temperature": "°C",
-    "conductivity": "µS/cm",
-    "share": "1",
-    "time": "day",
-    "iron": "mg/L Fe",
-    "manganese": "mg/L Mn",
-    "sodium": "mg/L Na",
-    "calcium": "mmol/L",
-    "magnesium": "mmol/L",
-    "potassium": "mmol/L",
-    "chloride": "mmol/L",
-    "sulfate": "mmol/L",
-    "nitrate": "mmol/L",
-}
-
-
-@dataclass(frozen=True, slots=True)
-class Default:
-    """What is assumed where nothing was entered: always shown, with its reason."""
-
-    value: float
-    unit: str
-    why: str
-    source: str = COMMON
-
-
-@dataclass(frozen=True, slots=True)
-class Field:
-    """One entry of a job."""
-
-    key: str
-    label: str
-    quantity: str  # a quantity of core.units; "" for plain numbers
-    units: tuple[str, ...]  # offered, the first unless the user's unit set says otherwise; () for plain numbers
-    lowest: float  # accepted range, in the core's unit
-    highest: float
-    help: str = ""
-    default: Default | None = None
-    often: bool = True  # shown at once; otherwise behind "more"
-    role: str = ""  # "resin", "daily volume": a kind of its quantity with units of its own
-
-    @property
-    def section(self) -> str:
-        """The section of the sheet that the entry belongs to."""
-        return self.key.partition(".")[0]
-
-    @property
-    def usual_source(self) -> str:
-        """Where it comes from until the user says otherwise: what the kit reads is measured, the rest is told."""
-        return "measured" if self.section == "water" or self.key in ("blend.softened", "blend.measured") else "told"
-
-    @property
-    def core_unit(self) -> str:
-        """The unit in which the core reckons with it; "" for plain numbers."""
-        return CORE_UNITS.get(self.role) or CORE_UNITS[self.quantity] if self.quantity else ""
-
-
-@dataclass(frozen=True, slots=True)
-class Choice:
-    """One decision of a job among named options."""
-
-    key: str
-    label: str
-    options: tuple[tuple[str, str], ...]  # (value kept in the file, words on the screen)
-    default: str
-    help: str = ""
-    often: bool = True
-
-    @property
-    def section(self) -> str:
-        """The section of the sheet that the choice belongs to."""
-        return self.key.partition(".")[0]
-
-
-_HARD = ("gpg", "°dH", "mg/L CaCO3", "mmol/L", "°fH", "°e", "meq/L", "mg/L Ca")
-_ALKALINITY = ("mg/L CaCO3", "mmol/L K_S4.3", "°dKH", "°fH", "mg/L HCO3", "meq/L")
-_DAILY = ("L/day", "gpd", "m³/day", "imp gal/day")
-_FLOW = ("L/min", "gpm", "m³/h", "L/s")
-
-
-def _ion(name: str) -> tuple[str, ...]:
-    return (f"mg/L {name}", "mmol/L", "meq/L", "mg/L CaCO3")
-
-
-_WATER = (
-    Field(
-        "water.hardness",
-        "Total hardness",
-        "hardness",
-        _HARD,
-        0.0,
-        100.0,
-        "Calcium and magnesium together, as the kit or the report gives it.",
-    ),
-    Field(
-        "water.iron",
-        "Dissolved iron",
-        "iron",
-        ("mg/L Fe", "µg/L Fe"),
-        0.0,
-        100.0,
-        "Clear water that turns brown on standing holds dissolved iron.",
-        Default(0.0, "mg/L Fe", "No iron was entered, so none is counted. Iron fouls resin: test for it."),
-    ),
-    Field(
-        "water.manganese",
-        "Manganese",
-        "manganese",
-        ("mg/L Mn", "µg/L Mn"),
-        0.0,
-        30.0,
-        "Black specks or slime point to manganese.",
-        Default(0.0, "mg/L Mn", "No manganese was entered, so none is counted."),
-        often=False,
-    ),
-    Field("water.ph", "pH", "", (), 0.0, 14.0, "Read it on site: it drifts in the bottle."),
-    Field(
-        "water.alkalinity",
-        "Alkalinity",
-        "alkalinity",
-        _ALKALINITY,
-        0.0,
-        200.0,
-        "Total alkalinity, carbonate hardness, acid capacity to pH 4.3: what lets lime drop out when heated.",
-    ),
-    Field(
-        "water.temperature",
-        "Temperature at the tap",
-        "temperature",
-        ("°C", "°F"),
-        0.0,
-        60.0,
-        "Cold water that has run for a while.",
-        Default(12.0, "°C", "No temperature was entered: usual for groundwater in a temperate climate."),
-        often=False,
-    ),
-    Field(
-        "water.conductivity",
-        "Conductivity at 25 °C",
-        "conductivity",
-        ("µS/cm", "mS/cm"),
-        0.0,
-        200_000.0,
-        often=False,
-    ),
-    Field("water.calcium", "Calcium", "calcium", _ion("Ca"), 0.0, 100.0, often=False),
-    Field("water.magnesium", "Magnesium", "magnesium", _ion("Mg"), 0.0, 100.0, often=False),
-    Field(
-        "water.sodium",
-        "Sodium in the raw water",
-        "sodium",
-        ("mg/L Na", "mmol/L"),
-        0.0,
-        30_000.0,
-        "Softening adds to it.",
-        often=False,
-    ),
-    Field("water.potassium", "Potassium", "potassium", ("mg/L K", "mmol/L"), 0.0, 100.0, often=False),
-    Field("water.chloride", "Chloride", "chloride", ("mg/L Cl", "mmol/L"), 0.0, 1000.0, often=False),
-    Field("water.sulfate", "Sulfate", "sulfate", ("mg/L SO4", "mmol/L"), 0.0, 500.0, often=False),
-    Field(
-        "water.nitrate",
-        "Nitrate",
-        "nitrate",
-        ("mg/L NO3", "mg/L NO3-N", "mmol/L"),
-        0.0,
-        100.0,
-        "As NO3 or as N: look at the report.",
-        often=False,
-    ),
-)
 
 _DEMAND = (
     Field("demand.persons", "Persons", "", (), 0.0, 100_000.0, "Who lives or works there on an average day."),
@@ -208,7 +30,7 @@ _DEMAND = (
         "demand.daily_volume",
         "Use by the meter",
         "flow",
-        _DAILY,
+        DAILY,
         0.0,
         1e9,
         "From the water meter or the bill, a day. It beats any figure per person.",
@@ -228,7 +50,7 @@ _DEMAND = (
         "demand.peak_flow",
         "Peak flow",
         "flow",
-        _FLOW,
+        FLOW,
         0.0,
         1e7,
         "Where it is known; it beats the count of bathrooms.",
@@ -317,7 +139,7 @@ _BLEND = (
         "blend.target",
         "Hardness wanted at the taps",
         "hardness",
-        _HARD,
+        HARD,
         0.0,
         100.0,
         "After raw water is mixed back in. Leave empty for fully softened water.",
@@ -326,7 +148,7 @@ _BLEND = (
         "blend.softened",
         "Hardness after the softener",
         "hardness",
-        _HARD,
+        HARD,
         0.0,
         100.0,
         "What the softener alone lets through.",
@@ -341,14 +163,16 @@ _BLEND = (
         "blend.measured",
         "Hardness measured in the blend",
         "hardness",
-        _HARD,
+        HARD,
         0.0,
         100.0,
         "At a tap after the valve was set: tells what the valve really does.",
     ),
 )
 
-FIELDS: dict[str, Field] = {entry.key: entry for entry in (*_WATER, *_SCALE, *_DEMAND, *_SOFTENER, *_BLEND)}
+FIELDS: dict[str, Field] = {
+    entry.key: entry for entry in (*WATER_FIELDS, *_SCALE, *_DEMAND, *_SOFTENER, *_BLEND, *DOSE_FIELDS, *SOURCE_FIELDS)
+}
 
 CHOICES: dict[str, Choice] = {
     choice.key: choice
@@ -406,15 +230,35 @@ CHOICES: dict[str, Choice] = {
             "nacl",
             often=False,
         ),
+        *DOSE_CHOICES,
+        *SOURCE_CHOICES,
     )
 }
 
+
+def field_for(key: str) -> Field | None:
+    """The entry of that name, of the tables or made by rule; None where there is none."""
+    return FIELDS.get(key) or source_field(key)
+
+
+def choice_for(key: str) -> Choice | None:
+    """The choice of that name, of the tables or made by rule; None where there is none."""
+    return CHOICES.get(key) or source_choice(key)
+
+
 # The parts of the assessment that a section shows after its own: each made when there is time for it.
-FURTHER_PARTS: dict[str, tuple[str, ...]] = {"softener": ("options", "run_out", "column")}
+FURTHER_PARTS: dict[str, tuple[str, ...]] = {
+    "softener": ("options", "run_out", "column"),
+    "dose": ("dose_water", "jars"),
+    "sources": ("turns",),
+}
 PART_TITLES = {
     "options": "Other ways to do it",
     "run_out": "How often it runs out",
     "column": "The same by a column model",
+    "dose_water": "What it does to the water",
+    "jars": "Jar test",
+    "turns": "One card for each case",
 }
 ON_DEMAND = {"column": "Work it out for this very water"}  # parts that take a second or more, and their button
 
@@ -424,4 +268,13 @@ SECTIONS: dict[str, str] = {
     "scale": "Scale",
     "softener": "Softener",
     "blend": "Blend",
+    "dose": "Dose",
 }
+USUAL_SECTIONS = ("water", "demand", "scale", "softener", "blend")  # of a sheet until somebody adds or removes one
+SECTION_CHOICE = "job.sections"  # the choice of the file that holds them, by name, with blanks between
+
+
+def sections_of(choices: Mapping[str, str]) -> tuple[str, ...]:
+    """The sections on the sheet of a job, in the order of the visit."""
+    chosen = choices.get(SECTION_CHOICE, "").split()
+    return tuple(key for key in SECTIONS if key in chosen) or USUAL_SECTIONS

@@ -12,7 +12,7 @@ from typing import Any
 
 from core.errors import TapwrightError
 from core.job.answers import Amount, Answer, Assumption, Caution, Missing, Part, Problem
-from core.job.fields import CHOICES, FIELDS, Field
+from core.job.fields import Field, choice_for, field_for
 from core.job.record import Entry, Job
 from core.units import convert
 from core.working import Card, Step, Working
@@ -39,8 +39,8 @@ class Ledger:
         """The entry in the core's unit, or its default as an assumption, or None."""
         entry = self.job.entries.get(key)
         if entry is None:
-            return self._assume(FIELDS[key])
-        return self._entered(FIELDS[key], entry)
+            return self._assume(_known(key))
+        return self._entered(_known(key), entry)
 
     def need(self, key: str, why: str) -> float | None:
         """The entry, noted as missing with what it is needed for where there is none."""
@@ -51,8 +51,10 @@ class Ledger:
 
     def choice(self, key: str) -> str:
         """What was chosen, or the default; an option that is not known counts as not chosen."""
-        chosen, choice = self.job.choices.get(key), CHOICES[key]
-        return chosen if chosen in dict(choice.options) else choice.default
+        chosen, choice = self.job.choices.get(key), choice_for(key)
+        if choice is None:
+            raise KeyError(key)
+        return chosen if chosen and (not choice.options or chosen in dict(choice.options)) else choice.default
 
     def chosen(self, key: str) -> bool:
         """Whether the user has decided."""
@@ -124,9 +126,16 @@ def _turned(reading: float, unit: str, core_unit: str, quantity: str) -> float:
     return convert(reading, unit, core_unit, quantity=quantity) if quantity else reading + 0.0
 
 
+def _known(key: str) -> Field:
+    entry = field_for(key)
+    if entry is None:
+        raise KeyError(key)
+    return entry
+
+
 @cache
 def _reading_card(key: str, unit: str) -> Card:
-    entry = FIELDS[key]
+    entry = _known(key)
     same = unit == entry.core_unit
     return Card(
         quantity=entry.label,

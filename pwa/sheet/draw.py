@@ -93,9 +93,8 @@ class Paper:
         self._pdf.set_producer(data.made_with)
         self._pdf.set_lang("en")
         self._pdf.set_creation_date(_day(data.day))
-        self._advance = self._pdf.fonts[
-            FONT
-        ].cw  # of each sign, in thousandths of the size; the font is not kerned here
+        self._font = cast(TTFFont, self._pdf.fonts[FONT])
+        self._advance = self._font.cw  # of each sign, in thousandths of the size; nothing is kerned here
 
     @property
     def signs(self) -> Set[int]:

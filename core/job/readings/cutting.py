@@ -27,7 +27,8 @@ _TOKEN = re.compile(
         (?:[ /-]{{1,2}}(?:DIN|EN|ISO|IEC|T)){{0,4}}[ :-]{{0,2}}[A-Z]?\d[\w:./-]{{0,30}})
     | (?P<charge>(?<=[A-Za-z0-9])[ ]?[1-3]?[+-]{{1,2}}(?=[\s|;:,)(]|$))
     | (?P<range>{_NUMBER}[ ]?(?:-|\.\.\.?|…|bis|to)[ ]?{_NUMBER}(?!\w))
-    | (?P<number>(?:(?:<=|>=|[<>])[ \u00a0]?)?(?:{_NUMBER}|(?<![\w.,])[.,]\d{{1,9}}(?![\d.,])))
+    | (?P<number>(?:(?:<=|>=|[<>])[ \u00a0]?|(?<![^\s:(;|])-(?=[\d.,]))?
+        (?:{_NUMBER}|(?<![\w.,])[.,]\d{{1,9}}(?![\d.,])))
     | (?P<word>p[Hh](?=\d)|[^\W\d_][\w\u0300-\u036f']{{0,200}}|_\w{{0,200}})
     | (?P<sep>[\t;|•]|\s{{2,}}|,(?=\s)|[.](?=\s+[^\W\d]))
     | (?P<space>\s)
@@ -51,6 +52,7 @@ _SAME_LENGTH = str.maketrans(
         "；": ";",
     }
 )
+_FOOTNOTE = re.compile("(?<=[0-9])[⁰¹²³⁴⁵⁶⁷⁸⁹]{1,9}")  # 92¹ is 92 with a footnote
 COUNTED = ("word", "number", "range", "date")  # kinds that can be part of a name
 
 
@@ -73,8 +75,8 @@ class Token:
 
 
 def fold(text: str) -> str:
-    """The text with odd signs made plain, each place where it was."""
-    return text.translate(_SAME_LENGTH)
+    """The text with odd signs made plain, each place where it was; a raised mark after a number is no part of it."""
+    return _FOOTNOTE.sub(lambda found: "^" * len(found[0]), text).translate(_SAME_LENGTH)
 
 
 def cut(line: str, offset: int = 0) -> list[Token]:

@@ -156,7 +156,7 @@ def _units(
     attached = [other.unit for other in item.numbers if other.unit is not None]
     loose = [token for token in item.of_kind("unit") if all(token is not unit for unit in attached)]
     tokens = [number.unit] if number.unit is not None else loose or attached
-    fitting = [token for token in tokens if measures(_counted_as(token, item), quantity)]
+    fitting = [token for token in tokens if measures(_counted_as(token, number, item), quantity)]
     if not fitting and number.unit is not None:
         doubts.append(f"“{number.unit.text}” is no unit of {FIELDS[field].label.lower()} known here.")
         return (), None
@@ -165,15 +165,15 @@ def _units(
         return name.asks or FIELDS[field].units, None
     if number.unit is None and not loose:
         doubts.append("The unit stands beside another number.")
-    meant = dict.fromkeys(unit for token in fitting for unit in _meant(field, name, token, item, doubts))
+    meant = dict.fromkeys(unit for token in fitting for unit in _meant(field, name, token, number, item, doubts))
     if len(meant) > 1 and len(fitting) > 1:
         doubts.append("There is more than one unit.")
     return tuple(meant), fitting[0]
 
 
-def _meant(field: str, name: Name, token: Token, item: Item, doubts: list[str]) -> tuple[str, ...]:
+def _meant(field: str, name: Name, token: Token, number: Number, item: Item, doubts: list[str]) -> tuple[str, ...]:
     try:
-        return (unit_of(_counted_as(token, item), field, name),)
+        return (unit_of(_counted_as(token, number, item), field, name),)
     except AmbiguousUnit as question:
         doubts.append(str(question))
         return question.choices
@@ -182,11 +182,21 @@ def _meant(field: str, name: Name, token: Token, item: Item, doubts: list[str]) 
         return ()
 
 
-def _counted_as(token: Token, item: Item) -> str:
+def _counted_as(unit: Token, number: Number, item: Item) -> str:
     """The unit with what the item says its figures are counted as: "mg/l" beside "as CaCO3"."""
-    bare = token.text.replace(" ", "").casefold() in _BARE
-    basis = item.of_kind("basis")
-    return f"{token.text} CaCO3" if bare and basis else token.text
+    bare = unit.text.replace(" ", "").casefold() in _BARE
+    return (
+        f"{unit.text} CaCO3"
+        if bare and any(_bears_on(basis, number, item) for basis in item.of_kind("basis"))
+        else unit.text
+    )
+
+
+def _bears_on(basis: Token, number: Number, item: Item) -> bool:
+    """Whether "as CaCO3" is said of this number: before it, or after it in the same clause."""
+    if basis.start < number.token.start:
+        return True
+    return not any(number.token.end <= token.start < basis.start for token in item.of_kind("sep"))
 
 
 def _without_conditions(item: Item, quantities: set[str]) -> list[Number]:
@@ -244,6 +254,7 @@ def _why_doubtful(item: Item, names: list[Token], numbers: list[Number]) -> list
     last = max(names[-1].start if names[-1] in item.tokens else 0, numbers[0].token.start)
     between = [t for t in item.tokens if first < t.start < last and t.kind in ("word", "absent")]
     changing = item.of_kind("changes")
+    changing += [b for b in item.of_kind("basis") if not all(_bears_on(b, number, item) for number in numbers)]
     after = _right_after(item, numbers)
     for token in [*_right_before(item, names[0]), *between, *changing, *after][:1]:
         doubts.append(f"“{token.text}” may change what is meant.")

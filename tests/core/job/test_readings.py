@@ -126,6 +126,25 @@ READ = [
         {"water.calcium": (92, "mg/L Ca"), "water.magnesium": (18, "mg/L Mg")},
     ),
     ("hardness as calcium", "Hardness 92 mg/l as Ca", {"water.hardness": (92, "mg/L Ca")}),
+    ("a footnote", "Calcium 92¹ mg/l", {"water.calcium": (92, "mg/L Ca")}),
+    ("a charge in brackets", "Sulfat (SO4--) 45 mg/l", {"water.sulfate": (45, "mg/L SO4")}),
+    ("unit in square brackets", "Gesamthärte [°dH]  17,2", {"water.hardness": (17.2, "°dH")}),
+    ("a dash between", "Natrium - 12 mg/l", {"water.sodium": (12, "mg/L Na")}),
+    (
+        "two units, the one sure",
+        "The water hardness at your address is 306 ppm or 17.9 grains per gallon.",
+        {"water.hardness": (17.9, "gpg")},
+    ),
+    (
+        "an aquarium's short hand",
+        "pH 7,0; GH 17 °dH; KH 12 °dH; NO3 25 mg/l",
+        {
+            "water.ph": (7.0, ""),
+            "water.hardness": (17, "°dH"),
+            "water.alkalinity": (12, "°dKH"),
+            "water.nitrate": (25, "mg/L NO3"),
+        },
+    ),
     ("own keys", "water.hardness;22;gpg", {"water.hardness": (22, "gpg")}),
 ]
 
@@ -162,6 +181,8 @@ ASKED = [  # what is wrong, the text, the entry, the choices in their order
     ),
     ("value or limit", "Natrium mg/l 200 12,4", "water.sodium", [(200, "mg/L Na"), (12.4, "mg/L Na")]),
     ("the word limit behind", "Mangan 0,05 mg/l Grenzwert", "water.manganese", [(0.05, "mg/L Mn")]),
+    ("CaCO3 in another cell", "Calcium | 92 | mg/l | as CaCO3", "water.calcium", [(92, "mg/L Ca")]),
+    ("CaCO3 of another number", "Ca 92 mg/l; as CaCO3 230", "water.calcium", [(92, "mg/L Ca"), (230, "mg/L CaCO3")]),
     ("as an oxide", "Kalium 2,1 mg/l K2O", "water.potassium", [(2.1, "mg/L K")]),
     ("an unknown word", "Sodium foobar 12 mg/L", "water.sodium", [(12, "mg/L Na")]),
     ("an unknown word before", "Residual hardness 0.5 gpg", "water.hardness", [(0.5, "gpg")]),
@@ -211,6 +232,7 @@ LEFT = [  # why, the text, the kind
     ("a range with a word", "Gesamthärte 15 bis 20 °dH", "not usable"),
     ("names and numbers in heaps", "Ca Mg Na 92 18 12", "not usable"),
     ("out of range", "pH 74", "not usable"),
+    ("below zero", "Temperatur: -5 °C", "not usable"),
     ("the wrong unit", "Calcium 92 µS/cm", "not usable"),
     ("not detected", "Chlorid nicht nachweisbar", "no number"),
     ("not detected, short", "Eisen n.n.", "no number"),

@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from typing import TYPE_CHECKING
 
 from core.job.answers import Answer, Part
-from core.job.fields import CHOICES, FIELDS, SECTIONS
+from core.job.fields import SECTIONS, choice_for, field_for
 from core.job.record import Job
 from pwa.state.display import Display
 
@@ -53,7 +53,7 @@ def _assumed(parts: Iterable[Part], display: Display) -> str:
     found = {}
     for part in parts:
         for assumption in part.assumptions:
-            named = FIELDS.get(assumption.field) or CHOICES.get(assumption.field)
+            named = field_for(assumption.field) or choice_for(assumption.field)
             label = named.label if named else "Other ions"
             shown = "" if assumption.amount is None else f" {display.show(assumption.amount)}"
             found[assumption.field] = f"{label}{shown}"

@@ -12,7 +12,7 @@ from numbers import Real
 
 from core.job.answers import Assumption, Caution, Part
 from core.job.comparison import Comparison
-from core.job.fields import CHOICES, FIELDS, SECTIONS
+from core.job.fields import CHOICES, FIELDS, SECTIONS, choice_for, field_for
 from core.job.ledger import ORIGIN
 from core.job.offer import Offer
 from core.job.record import Entry, Job
@@ -93,7 +93,7 @@ def technical_sections(
 
 def _entries(job: Job, display: Display) -> list[Block]:
     rows = [
-        (FIELDS[key].label if key in FIELDS else key, _entered(job.entries[key], display), _origin(job.entries[key]))
+        (_label(key, key), _entered(job.entries[key], display), _origin(job.entries[key]))
         for key in (*FIELDS, *(key for key in job.entries if key not in FIELDS))
         if key in job.entries
     ]
@@ -102,6 +102,11 @@ def _entries(job: Job, display: Display) -> list[Block]:
         if rows
         else []
     )
+
+
+def _label(key: str, otherwise: str = OTHER) -> str:
+    named = field_for(key) or choice_for(key)
+    return named.label if named else otherwise
 
 
 def _entered(entry: Entry, display: Display) -> str:
@@ -123,20 +128,19 @@ def _assumed(parts: Iterable[Part], display: Display, sources: Sources) -> list[
             found |= {assumption.field: assumption for assumption in part.assumptions}
     rows = []
     for key, assumption in found.items():
-        named = FIELDS.get(key) or CHOICES.get(key)
         cited = "" if assumption.source == "definition" else f"\n{sources.cite(assumption.source)}"
         why = f"{sources.in_text(assumption.why)}{cited}"
         shown = NOTHING if assumption.amount is None else display.show(assumption.amount)
-        rows.append((named.label if named else OTHER, shown, why))
+        rows.append((_label(key), shown, why))
     return [Table(("", "Value", "Why"), tuple(rows), (0.30, 0.20, 0.50), frozenset({1}))] if rows else []
 
 
 def _choices(job: Job) -> list[Block]:
     rows = []
-    for key, choice in CHOICES.items():
-        if key in job.choices:
-            options = dict(choice.options)
-            rows.append((choice.label, options.get(job.choices[key], job.choices[key])))
+    for key in (*CHOICES, *(key for key in job.choices if key not in CHOICES)):
+        choice, decided = choice_for(key), job.choices.get(key)
+        if choice is not None and decided is not None:
+            rows.append((choice.label, dict(choice.options).get(decided, decided)))
     return [Table(("Choice", "Decided"), tuple(rows), (0.42, 0.58))] if rows else []
 
 

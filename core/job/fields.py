@@ -270,6 +270,15 @@ SECTIONS: dict[str, str] = {
     "blend": "Blend",
     "dose": "Dose",
 }
+SECTION_WORDS = {
+    "water": "What the kit or the report says",
+    "demand": "How much water, how fast",
+    "scale": "Lime in the heater, balance at the tap",
+    "softener": "Size, salt setting, running",
+    "blend": "Raw water back into softened",
+    "dose": "Soda ash, lime or caustic, and the pump",
+    "sources": "Several wells to one demand, within limits",
+}
 USUAL_SECTIONS = ("water", "demand", "scale", "softener", "blend")  # of a sheet until somebody adds or removes one
 SECTION_CHOICE = "job.sections"  # the choice of the file that holds them, by name, with blanks between
 

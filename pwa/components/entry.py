@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import flet as ft
 
 from core.job.answers import Amount
-from core.job.fields import FIELDS, Field
+from core.job.fields import Field, field_for
 from pwa import theme
 from pwa.components.box import Box
 from pwa.components.guard import guarded
@@ -36,7 +36,9 @@ PROVENANCE = {
 @guarded
 def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
     """A field with its unit and its provenance; what is wrong stands under it."""
-    field = FIELDS[state.key]
+    field = field_for(state.key)
+    if field is None:
+        raise KeyError(state.key)
     return ft.Column(
         spacing=4,
         controls=[

@@ -7,7 +7,7 @@ from collections.abc import Callable
 import flet as ft
 
 from core.job.answers import Answer, Assumption, Part
-from core.job.fields import CHOICES, FIELDS, ON_DEMAND
+from core.job.fields import ON_DEMAND, choice_for, field_for
 from core.references import REFERENCES
 from pwa import theme
 from pwa.components.guard import guarded
@@ -128,7 +128,7 @@ def _assumptions(part: Part, display: Display) -> list[ft.Control]:
 
 
 def _assumed(assumption: Assumption, display: Display) -> str:
-    named = FIELDS.get(assumption.field) or CHOICES.get(assumption.field)
+    named = field_for(assumption.field) or choice_for(assumption.field)
     name = named.label if named else "Other ions"
     value = f": {display.show(assumption.amount)}." if assumption.amount else "."
     return f"{name}{value} {assumption.why} {_cited(assumption.source)}"

@@ -55,16 +55,19 @@ def StepBlock(number: int, step: Step, display: Display) -> ft.Control:
         *[
             ft.Text(f"{name.replace('_', ' ')} = {amount(value, card.takes.get(name, ''), display)}")
             for name, value in step.inputs.items()
+            if _is_number(value) or isinstance(value, str)
         ],
-        ft.Text(f"= {amount(step.result, card.unit, display)}", weight=ft.FontWeight.W_600, color=ft.Colors.PRIMARY),
     ]
+    if _is_number(step.result):
+        result = amount(step.result, card.unit, display)
+        lines.append(ft.Text(f"= {result}", weight=ft.FontWeight.W_600, color=ft.Colors.PRIMARY))
     lines += [Note(text) for text in (step.note, card.validity, source_of(card.source)) if text]
     return ft.Column(spacing=2, controls=lines)
 
 
 def amount(value: object, unit: str, display: Display) -> str:
     """A number of the working with its unit; a share of one is shown as a plain number."""
-    if isinstance(value, int | float) and not isinstance(value, bool):
+    if _is_number(value):
         number = format_number(float(value), digits=DIGITS, decimal=display.decimal)
         return number if unit == "1" else f"{number} {unit_shown(unit)}".rstrip()
     from core.chemistry import Solution  # numpy is in by the time anything has been worked out
@@ -74,6 +77,11 @@ def amount(value: object, unit: str, display: Display) -> str:
         held = ", ".join(f"{name} {format_number(float(mmol), DIGITS, display.decimal)}" for name, mmol in ions.items())
         return unit_shown(f"{held} mmol/kg; pH {format_number(float(value.ph), DIGITS, display.decimal)}")
     return f"{value}" if isinstance(value, str | bool) else "as worked out above"
+
+
+def _is_number(value: object) -> bool:
+    """Whether it can be written as a figure; whole waters and tables stand for themselves in the words above."""
+    return isinstance(value, int | float) and not isinstance(value, bool)
 
 
 def source_of(key: str) -> str:

@@ -19,8 +19,11 @@ def JobView(workspace: Workspace, standing: Standing, preferences: Preferences) 
     """The sheet; on a wide screen with its first section beside it."""
     job_id = ft.use_route_params().get("job_id", "")
     sheet = use_sheet(workspace, job_id)
-    first = next(iter(SECTIONS))
-    return _view(f"/job/{job_id}", sheet, lambda sheet: _sheet(workspace, standing, preferences, sheet, first))
+
+    def pane(sheet: Sheet) -> ft.Control:
+        return _sheet(workspace, standing, preferences, sheet, sheet.layout.sections[0])
+
+    return _view(f"/job/{job_id}", sheet, pane)
 
 
 @guarded

@@ -12,8 +12,10 @@ from pwa.components.guard import guarded
 from pwa.components.notes import Answers, Further, Remarks
 from pwa.components.words import Disclosure
 from pwa.state.display import Display
-from pwa.state.sheet import Sheet
+from pwa.state.sheet import Layout, Sheet
 from pwa.state.workspace import Preferences, Workspace
+
+CHOICE_FIRST = ("dose", "sources")  # sections in which a decision says which entries matter
 
 
 @guarded
@@ -41,24 +43,27 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                     More(sheet, section, display),
                     Answers(sheet.parts[section], shown),
                     *[
-                        Further(sheet.parts[part], PART_TITLES[part], sheet, shown, workspace.work_out)
+                        control
                         for part in further
+                        for control in (
+                            Further(sheet.parts[part], PART_TITLES[part], sheet, shown, workspace.work_out),
+                            *_entries(sheet, section, display, often=True, part=part),
+                        )
                     ],
                     Remarks(sheet.parts[section], shown),
                 ],
             ),
-            NextBar(sheet.job.id, section),
+            NextBar(sheet.layout, sheet.job.id, section),
         ],
     )
 
 
-def _entries(sheet: Sheet, section: str, display: Display, *, often: bool) -> list[ft.Control]:
-    fields = [f.key for f in FIELDS.values() if f.section == section and f.often == often]
-    choices = [c for c in CHOICES.values() if c.section == section and c.often == often]
-    return [
-        *[EntryField(sheet.fields[key], sheet, display, key=key) for key in fields],
-        *[ChoiceField(sheet.choices[c.key], c.label, c.help, c.options, sheet, key=c.key) for c in choices],
-    ]
+def _entries(sheet: Sheet, section: str, display: Display, *, often: bool, part: str = "") -> list[ft.Control]:
+    fields = [f.key for f in FIELDS.values() if f.section == section and f.often == often and f.part == part]
+    choices = [c for c in CHOICES.values() if c.section == section and c.often == often and not part]
+    decided = [ChoiceField(sheet.choices[c.key], c.label, c.help, c.options, sheet, key=c.key) for c in choices]
+    entered = [EntryField(sheet.fields[key], sheet, display, key=key) for key in fields]
+    return [*decided, *entered] if section in CHOICE_FIRST else [*entered, *decided]
 
 
 @guarded
@@ -81,10 +86,11 @@ def _any_entered(sheet: Sheet, section: str) -> bool:
     return any(sheet.fields[f.key].typed for f in FIELDS.values() if f.section == section and not f.often)
 
 
-def NextBar(job_id: str, section: str) -> ft.Control:
+@guarded
+def NextBar(layout: Layout, job_id: str, section: str) -> ft.Control:
     """On to the next section, or back to the sheet after the last; always within the thumb's reach."""
     order = list(SECTIONS)
-    following = order[order.index(section) + 1 :][:1]
+    following = [key for key in order[order.index(section) + 1 :] if key in layout.sections][:1]
     label = f"Next: {SECTIONS[following[0]]}" if following else "Back to the sheet"
     route = "/".join([f"/job/{job_id}", *following])
     return ft.Container(

@@ -6,25 +6,21 @@ from collections.abc import Callable
 
 import flet as ft
 
-from core.job.fields import SECTIONS
+from core.job.fields import SECTION_WORDS, SECTIONS
 from pwa import theme
 from pwa.components.answer import AnswerBlock, spoken
 from pwa.components.banner import Banners
 from pwa.components.box import Box
 from pwa.components.guard import guarded
-from pwa.components.words import Tappable
+from pwa.components.words import Disclosure, Note, Tappable
 from pwa.state.display import Display
-from pwa.state.sheet import Heading, PartState, Sheet
+from pwa.state.sheet import Heading, Layout, PartState, Sheet
 from pwa.state.workspace import Preferences, Workspace
 
 
 @guarded
 def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chosen: str = "") -> ft.Control:
     """Name, place, and the cards."""
-    cards = [
-        SectionCard(sheet.parts[key], title, sheet.job.id, lambda: workspace.display(sheet), chosen == key, key=key)
-        for key, title in SECTIONS.items()
-    ]
     return ft.Column(
         expand=True,
         spacing=0,
@@ -35,9 +31,61 @@ def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chos
                 expand=True,
                 padding=theme.PAD,
                 spacing=theme.PAD,
-                controls=[HeadingFields(sheet.heading, sheet), *cards],
+                controls=[
+                    HeadingFields(sheet.heading, sheet),
+                    Cards(sheet.layout, sheet, workspace, chosen),
+                    SectionsShown(sheet.layout, sheet),
+                ],
             ),
         ],
+    )
+
+
+@guarded
+def Cards(layout: Layout, sheet: Sheet, workspace: Workspace, chosen: str) -> ft.Control:
+    """A card for each section on the sheet."""
+    return ft.Column(
+        spacing=theme.PAD,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
+        controls=[
+            SectionCard(
+                sheet.parts[key], SECTIONS[key], sheet.job.id, lambda: workspace.display(sheet), chosen == key, key=key
+            )
+            for key in layout.sections
+        ],
+    )
+
+
+@guarded
+def SectionsShown(layout: Layout, sheet: Sheet) -> ft.Control:
+    """Which sections the sheet carries: each put on or taken off with a tap, its entries kept either way."""
+    opened, set_opened = ft.use_state(False)
+    words = "Only what the job needs; what was entered is kept"
+    rows = [_section_row(key, key in layout.sections, sheet) for key in SECTIONS] if opened else []
+    return ft.Column(
+        spacing=0,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
+        controls=[Disclosure("Add or remove sections", words, opened, lambda event: set_opened(not opened)), *rows],
+    )
+
+
+def _section_row(section: str, shown: bool, sheet: Sheet) -> ft.Control:
+    title = SECTIONS[section]
+    return Tappable(
+        f"{'Remove' if shown else 'Add'} {title}",
+        lambda event: sheet.show_section(section, shown=not shown),
+        ft.Row(
+            controls=[
+                ft.Icon(
+                    ft.Icons.CHECK_BOX if shown else ft.Icons.CHECK_BOX_OUTLINE_BLANK,
+                    color=ft.Colors.PRIMARY if shown else ft.Colors.ON_SURFACE_VARIANT,
+                ),
+                ft.Column(expand=True, spacing=0, controls=[ft.Text(title), Note(SECTION_WORDS[section])]),
+            ]
+        ),
+        selected=shown,
+        padding=ft.Padding.symmetric(vertical=theme.GAP),
+        border=ft.Border.only(bottom=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
     )
 
 

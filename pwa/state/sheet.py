@@ -7,15 +7,27 @@ only in the job; the fields hold what was typed.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, replace
+from typing import TypeVar
 
 import flet as ft
 
 from core.errors import UnitError
 from core.job.answers import Part
-from core.job.fields import CHOICES, FIELDS, FURTHER_PARTS, SECTIONS, Field
+from core.job.fields import (
+    CHOICES,
+    FIELDS,
+    FURTHER_PARTS,
+    SECTION_CHOICE,
+    SECTIONS,
+    Field,
+    choice_for,
+    field_for,
+    sections_of,
+)
 from core.job.record import Entry, Job
+from core.job.source_fields import MOST, parameters_of, source_numbers
 from pwa.text import parse_quantity
 
 
@@ -64,6 +76,44 @@ class PartState:
         self.turn += 1
 
 
+State = TypeVar("State")
+
+
+@ft.observable
+@dataclass
+class Layout:
+    """What there is to show: the sections on the sheet, the sources, and what is looked at in them."""
+
+    sections: tuple[str, ...] = ()
+    sources: tuple[int, ...] = ()
+    parameters: tuple[str, ...] = ()
+
+    @classmethod
+    def of(cls, job: Job) -> Layout:
+        """What a job asks to be shown."""
+        numbers = source_numbers((*job.entries, *job.choices))
+        return cls(sections_of(job.choices), numbers, parameters_of(job.choices, job.entries))
+
+    def follow(self, job: Job) -> None:
+        """Take over what has changed."""
+        new = Layout.of(job)
+        for name in ("sections", "sources", "parameters"):
+            if getattr(self, name) != getattr(new, name):
+                setattr(self, name, getattr(new, name))
+
+
+class _Made(dict[str, State]):
+    """States by key, each made when it is first asked for: a job may hold entries that no table lists."""
+
+    def __init__(self, make: Callable[[str], State], keys: Iterable[str]) -> None:
+        super().__init__({key: make(key) for key in keys})
+        self._make = make
+
+    def __missing__(self, key: str) -> State:
+        self[key] = self._make(key)
+        return self[key]
+
+
 @ft.observable
 @dataclass
 class Heading:
@@ -84,15 +134,11 @@ class Sheet:
         self.job = job
         self._changed, self._units = changed, units
         self.heading = Heading(job.name, job.place, job.notes)
-        self.fields = {
-            key: _field_state(FIELDS[key], job.entries.get(key), units(self.hardness_unit)) for key in FIELDS
-        }
-        self.choices = {
-            key: ChoiceState(key, job.choices.get(key, choice.default), key in job.choices)
-            for key, choice in CHOICES.items()
-        }
         further = (part for parts in FURTHER_PARTS.values() for part in parts)
         self.parts = {key: PartState(key) for key in (*SECTIONS, *further)}
+        self.fields = _Made(self._field, FIELDS)
+        self.choices = _Made(self._choice, CHOICES)
+        self.layout = Layout.of(job)
         self.looked_at = ""  # the section on the screen: what it shows further is kept up to date
 
     @property
@@ -121,7 +167,30 @@ class Sheet:
         """Make a choice."""
         state = self.choices[key]
         state.value, state.made = value, True
-        self._put(self.job.with_choice(key, value), CHOICES[key].section)
+        self._put(self.job.with_choice(key, value), _section(key))
+
+    def show_section(self, section: str, *, shown: bool) -> None:
+        """Put a section on the sheet, or take it off; its entries stay in the job."""
+        kept = [key for key in SECTIONS if (shown if key == section else key in self.layout.sections)]
+        if kept:
+            self._put(self.job.with_choice(SECTION_CHOICE, " ".join(kept)), section if shown else "")
+
+    def add_source(self) -> int | None:
+        """Begin another source; gives its number, None where there are as many as can be."""
+        free = next((number for number in range(1, MOST + 1) if number not in self.layout.sources), None)
+        if free is not None:
+            self.choose(f"sources.{free}.name", f"Source {free}")
+        return free
+
+    def remove_source(self, number: int) -> None:
+        """Take a source out of the job, with all that was entered for it."""
+        own = f"sources.{number}."
+        for states in (self.fields, self.choices):
+            for key in [key for key in states if key.startswith(own)]:
+                del states[key]
+        entries = {key: entry for key, entry in self.job.entries.items() if not key.startswith(own)}
+        choices = {key: choice for key, choice in self.job.choices.items() if not key.startswith(own)}
+        self._put(replace(self.job, entries=entries, choices=choices), "sources")
 
     def rename(self, name: str | None = None, place: str | None = None, notes: str | None = None) -> None:
         """Change the words that name the job."""
@@ -142,40 +211,67 @@ class Sheet:
         state.refused = state.note = ""
         if not state.typed.strip():
             state.remark = state.level = ""
-            self._put(self.job.with_entry(key, None), FIELDS[key].section)
+            self._put(self.job.with_entry(key, None), _section(key))
             return
         value = None
         try:
-            reading = parse_quantity(state.typed, FIELDS[key].quantity, state.unit)
+            reading = parse_quantity(state.typed, _known(key).quantity, state.unit)
             value, state.unit, state.note = reading.value, reading.unit, reading.note
         except UnitError as error:
             state.refused = str(error)
         entry = Entry(value, state.unit, state.source, typed=state.typed)
         if key == "water.hardness":
             self._follow(state.unit)
-        self._put(self.job.with_entry(key, entry), FIELDS[key].section)
+        self._put(self.job.with_entry(key, entry), _section(key))
 
     def _follow(self, hardness_unit: str) -> None:
         """Offer the entries that are still empty in the units that go with the hardness as read."""
         units = self._units(hardness_unit)
         for state in self.fields.values():
-            unit = _usual_unit(FIELDS[state.key], units)
+            unit = _usual_unit(_known(state.key), units)
             if not state.typed.strip() and state.unit != unit:
                 state.unit = unit
 
     def _put(self, job: Job, section: str) -> None:
         self.job = job
+        self.layout.follow(job)
         self._changed(self, section)
+
+    def _field(self, key: str) -> FieldState:
+        state = _field_state(_known(key), self.job.entries.get(key), self._units(self.hardness_unit))
+        held = self.parts.get(_section(key))
+        problems = held.part.problems if held is not None and held.part is not None else ()
+        problem = next((problem for problem in problems if problem.field == key), None)
+        if problem:
+            state.remark, state.level = problem.text, problem.level
+        return state
+
+    def _choice(self, key: str) -> ChoiceState:
+        choice = choice_for(key)
+        if choice is None:
+            raise KeyError(key)
+        return ChoiceState(key, self.job.choices.get(key, choice.default), key in self.job.choices)
 
     def _remark(self, section: str, part: Part) -> None:
         said = {problem.field: problem for problem in part.problems}
         for key, state in self.fields.items():
             problem = said.get(key)
-            if problem is None and FIELDS[key].section != section:
+            if problem is None and _section(key) != section:
                 continue
             remark, level = (problem.text, problem.level) if problem else ("", "")
             if (remark, level) != (state.remark, state.level):
                 state.remark, state.level = remark, level
+
+
+def _section(key: str) -> str:
+    return key.partition(".")[0]
+
+
+def _known(key: str) -> Field:
+    field = field_for(key)
+    if field is None:
+        raise KeyError(key)
+    return field
 
 
 def _field_state(field: Field, entry: Entry | None, units: Mapping[str, str]) -> FieldState:

@@ -16,7 +16,7 @@ from typing import Any
 import flet as ft
 
 from core.errors import TapwrightError
-from core.job.fields import FURTHER_PARTS, ON_DEMAND, SECTIONS
+from core.job.fields import FURTHER_PARTS, ON_DEMAND
 from core.job.record import Job
 from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
@@ -31,6 +31,7 @@ log = logging.getLogger("tapwright")
 
 REST = 0.25  # s after the last key press until the sections that are not in view are assessed again
 LEISURE = 0.1  # s between the parts that take longer, so that the screen is never held up for all of them
+LEADING = ("sources", "dose", "softener", "blend", "scale", "water")  # whose answer stands for a job in the list
 PAGE = 50  # jobs of the list that are fetched at once
 
 
@@ -118,7 +119,7 @@ class Workspace:
         self._assess = assess
         self.standing.computing = True
         for sheet in self.sheets.values():
-            self._assess_sheet(sheet, SECTIONS)
+            self._assess_sheet(sheet, sheet.layout.sections)
             await self._further(sheet)
 
     def _host_changed(self) -> None:
@@ -195,7 +196,7 @@ class Workspace:
 
     def _open_sheet(self, job: Job) -> Sheet:
         sheet = Sheet(job, self._changed, self._units)
-        self._assess_sheet(sheet, SECTIONS)
+        self._assess_sheet(sheet, sheet.layout.sections)
         return sheet
 
     def _changed(self, sheet: Sheet, section: str) -> None:
@@ -210,7 +211,7 @@ class Workspace:
 
     async def _rest(self, sheet: Sheet) -> None:
         await asyncio.sleep(REST)
-        for section in SECTIONS:
+        for section in sheet.layout.sections:
             self._assess_sheet(sheet, (section,))
             await asyncio.sleep(0)
         self._keep(sheet)
@@ -219,6 +220,8 @@ class Workspace:
     async def look(self, sheet: Sheet, section: str) -> None:
         """Say which section is on the screen; what it shows further is worked out at leisure."""
         sheet.looked_at = section
+        if sheet.parts[section].part is None:
+            self._assess_sheet(sheet, (section,))
         await self._further(sheet)
 
     def work_out(self, sheet: Sheet, part: str) -> None:
@@ -250,12 +253,12 @@ class Workspace:
 
     def summary(self, sheet: Sheet) -> str:
         """The answer of a job in one line, for the list."""
-        part = sheet.parts["softener"].part
-        if part is None:
-            return ""
-        if part.headline is None:
-            return part.missing[0].text if part.missing else ""
-        return self.display(sheet).say(part.headline.words)
+        shown = [key for key in LEADING if key in sheet.layout.sections]
+        parts = [part for part in (sheet.parts[key].part for key in shown) if part is not None]
+        answered = next((part.headline for part in parts if part.headline is not None), None)
+        if answered is not None:
+            return self.display(sheet).say(answered.words)
+        return next((part.missing[0].text for part in parts if part.missing), "")
 
     def display(self, sheet: Sheet | None = None) -> Display:
         """How answers are shown: the user's units, hardness in the unit that was typed in this job."""

@@ -3,34 +3,24 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 
 import flet as ft
 
 from core.job.answers import Amount
 from core.job.fields import Field, field_for
+from core.job.record import Entry
 from pwa import theme
 from pwa.components.box import Box
+from pwa.components.field_test import FieldTestSheet
 from pwa.components.guard import guarded
+from pwa.components.menu import Menu
+from pwa.components.source import PROVENANCE, SourceButton, SourceSheet, offered_kits
+from pwa.components.tone import ToneLine
 from pwa.state.display import Display, unit_shown
+from pwa.state.field_test import FieldTest, kits_to_test
 from pwa.state.sheet import ChoiceState, FieldState, Sheet
 
-
-@dataclass(frozen=True, slots=True)
-class Provenance:
-    """How a source is named and which shape it has."""
-
-    word: str
-    icon: ft.IconData
-    explained: str
-
-
-PROVENANCE = {
-    "measured": Provenance("measured", ft.Icons.SCIENCE_OUTLINED, "measured here, with a kit or a meter"),
-    "report": Provenance("from a report", ft.Icons.DESCRIPTION_OUTLINED, "read from a laboratory or supplier report"),
-    "told": Provenance("told", ft.Icons.CHAT_BUBBLE_OUTLINE, "told by the customer"),
-    "assumed": Provenance("assumed", ft.Icons.HELP_OUTLINE, "assumed, to be checked"),
-}
+Opener = Callable[[str], None]
 
 
 @guarded
@@ -39,6 +29,9 @@ def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
     field = field_for(state.key)
     if field is None:
         raise KeyError(state.key)
+    opened, open_ = ft.use_state("")  # "source" or "test": the sheet that lies over the screen
+    test, _ = ft.use_state(FieldTest)
+    ft.use_dialog(_laid_over(opened, open_, test, field, state, sheet, display))
     return ft.Column(
         spacing=4,
         controls=[
@@ -50,9 +43,36 @@ def EntryField(state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
                     *_unit(field, state, sheet),
                 ],
             ),
-            _below(field, state, sheet, display),
+            *_below(field, state, sheet, display, open_),
         ],
     )
+
+
+def _laid_over(
+    opened: str, open_: Opener, test: FieldTest, field: Field, state: FieldState, sheet: Sheet, display: Display
+) -> ft.BottomSheet | None:
+    own = sheet.own_kits
+
+    def close() -> None:
+        open_("")
+
+    def choose(source: str, kit: str) -> None:
+        sheet.set_source(state.key, source, kit)
+        close()
+
+    def take_over(entry: Entry) -> None:
+        sheet.put_entry(state.key, entry)
+        close()
+
+    countable = kits_to_test(field, own)
+    if opened == "source":
+        entry = Entry(None, state.unit, state.source, state.kit)
+        entry = sheet.job.entries.get(state.key, entry)
+        count = (lambda: open_("test")) if countable else None
+        return SourceSheet(field, entry, own, sheet.doubt_of, display, choose, count, close)
+    if opened == "test" and countable:
+        return FieldTestSheet(test, field, state, own, display, take_over, close)
+    return None
 
 
 def _box(field: Field, state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
@@ -84,56 +104,38 @@ def _unit(field: Field, state: FieldState, sheet: Sheet) -> list[ft.Control]:
     ]
 
 
-def Menu(
-    *,
-    tooltip: str,
-    shown: str,
-    options: list[tuple[str, str]],
-    chosen: str,
-    choose: Callable[[str], None],
-    icon: ft.IconData | None = None,
-    height: int = theme.TOUCH,
-) -> ft.Control:
-    """A button that opens a list to pick from."""
-    content: list[ft.Control] = [ft.Icon(icon, size=18, color=ft.Colors.ON_SURFACE_VARIANT)] if icon else []
-    content += [ft.Text(shown), ft.Icon(ft.Icons.ARROW_DROP_DOWN, color=ft.Colors.ON_SURFACE_VARIANT)]
-    button = ft.PopupMenuButton(
-        tooltip=tooltip,
-        padding=0,
-        content=ft.Container(
-            height=height,
-            padding=ft.Padding.only(left=10, right=2),
-            border_radius=4,
-            border=ft.Border.all(1, ft.Colors.OUTLINE_VARIANT),
-            content=ft.Row(spacing=4, tight=True, controls=content),
-        ),
-        items=[
-            ft.PopupMenuItem(content=words, checked=value == chosen, on_click=lambda event, value=value: choose(value))
-            for value, words in options
-        ],
-    )
-    return ft.Semantics(container=True, content=button)
-
-
-def _below(field: Field, state: FieldState, sheet: Sheet, display: Display) -> ft.Control:
+def _below(field: Field, state: FieldState, sheet: Sheet, display: Display, open_: Opener) -> list[ft.Control]:
     if not state.typed.strip():
-        return _hint(field, display)
-    source = PROVENANCE[state.source]
-    controls: list[ft.Control] = [
-        Menu(
-            tooltip=f"Where {field.label} comes from",
-            shown=source.word,
-            icon=source.icon,
-            options=[(key, p.explained) for key, p in PROVENANCE.items()],
-            chosen=state.source,
-            choose=lambda value: sheet.set_source(state.key, value),
+        if not any(kit.kind == "drops" for kit in kits_to_test(field, sheet.own_kits)):
+            return [_hint(field, display)]
+        count = ft.TextButton(
+            "Count drops",
+            tooltip=f"Count drops: {field.label}",
+            height=theme.TOUCH,
+            on_click=lambda event: open_("test"),
         )
-    ]
+        return [ft.Row(spacing=theme.GAP, controls=[ft.Container(expand=True, content=_hint(field, display)), count])]
+    said = display.say_as_read(state.doubt) if state.doubt else ""
+    words = " ".join(filter(None, (state.note, said)))
+    beside = [_small(words, ft.Colors.ON_SURFACE_VARIANT)] if words else []
+    controls: list[ft.Control] = [ft.Row(spacing=theme.GAP, controls=[_source(field, state, sheet, open_), *beside])]
     if state.remark and state.level == "warning":
-        controls.append(_small(state.remark, ft.Colors.TERTIARY))
-    elif state.note:
-        controls.append(_small(state.note, ft.Colors.ON_SURFACE_VARIANT))
-    return ft.Row(spacing=theme.GAP, controls=controls)
+        controls.append(ToneLine("watch", state.remark))
+    return controls
+
+
+def _source(field: Field, state: FieldState, sheet: Sheet, open_: Opener) -> ft.Control:
+    if offered_kits(field, sheet.own_kits):
+        return SourceButton(field, state.source, lambda: open_("source"))
+    source = PROVENANCE[state.source]
+    return Menu(
+        tooltip=f"Where {field.label} comes from",
+        shown=source.word,
+        icon=source.icon,
+        options=[(key, p.explained) for key, p in PROVENANCE.items()],
+        chosen=state.source,
+        choose=lambda value: sheet.set_source(state.key, value),
+    )
 
 
 def _small(text: str, colour: str) -> ft.Control:

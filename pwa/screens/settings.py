@@ -5,8 +5,8 @@ from __future__ import annotations
 import flet as ft
 
 from pwa import theme
-from pwa.components.entry import Menu
 from pwa.components.guard import guarded
+from pwa.components.menu import Menu
 from pwa.state.display import UNIT_SET_NAMES
 from pwa.state.workspace import Preferences, Workspace
 

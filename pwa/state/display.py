@@ -122,6 +122,13 @@ class Display:
         """A phrase with its amounts in this user's units."""
         return phrase.render(self.show)
 
+    def say_as_read(self, phrase: Phrase) -> str:
+        """A phrase with its amounts in the units they were read in."""
+        said = phrase.render(lambda amount: format_quantity(amount.value, amount.unit, self.decimal))
+        for unit in {amount.unit for amount in phrase.amounts.values()}:
+            said = said.replace(f"{GAP}{unit} to ", " to ")  # "20.5 to 23.5 gpg"
+        return unit_shown(said)
+
     def _turned(self, amount: Amount) -> tuple[float, str]:
         unit = self.unit_of(amount)
         if unit == amount.unit or not amount.quantity:

@@ -14,7 +14,7 @@ from typing import TypeVar
 import flet as ft
 
 from core.errors import UnitError
-from core.job.answers import Part
+from core.job.answers import Part, Phrase
 from core.job.fields import (
     CHOICES,
     FIELDS,
@@ -26,6 +26,7 @@ from core.job.fields import (
     field_for,
     sections_of,
 )
+from core.job.kits import HowRead, Kit
 from core.job.record import Entry, Job
 from core.job.source_fields import MOST, parameters_of, source_numbers
 from pwa.text import parse_quantity
@@ -44,6 +45,8 @@ class FieldState:
     note: str = ""  # how what was typed was understood, where that is not plain
     remark: str = ""  # what the checks say of the value
     level: str = ""  # of the remark: warning | error
+    kit: str = ""  # what it was measured with, as kept in the entry
+    doubt: Phrase | None = None  # what the truth may be; None where nothing is to be said
 
 
 @ft.observable
@@ -139,6 +142,8 @@ class Sheet:
         self.fields = _Made(self._field, FIELDS)
         self.choices = _Made(self._choice, CHOICES)
         self.layout = Layout.of(job)
+        self.own_kits: tuple[Kit, ...] = ()
+        self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed
         self.looked_at = ""  # the section on the screen: what it shows further is kept up to date
 
     @property
@@ -151,6 +156,7 @@ class Sheet:
         """Take in what stands in a field now."""
         state = self.fields[key]
         state.typed = typed
+        state.kit = HowRead.of(state.kit).kit  # a mean or a dilution belonged to the number that stood there
         self._enter(key)
 
     def set_unit(self, key: str, unit: str) -> None:
@@ -158,10 +164,28 @@ class Sheet:
         self.fields[key].unit = unit
         self._enter(key)
 
-    def set_source(self, key: str, source: str) -> None:
-        """Say where the entry comes from."""
-        self.fields[key].source = source
+    def set_source(self, key: str, source: str, kit: str = "") -> None:
+        """Say where the entry comes from, and with which kit it was measured."""
+        state = self.fields[key]
+        state.source, state.kit = source, kit if source == "measured" else ""
         self._enter(key)
+
+    def put_entry(self, key: str, entry: Entry) -> None:
+        """Take over an entry that was made elsewhere: by a test in the field, or out of a report."""
+        state = self.fields[key]
+        made = _field_state(_known(key), entry, {})
+        state.typed, state.unit, state.source, state.kit = made.typed, made.unit, made.source, made.kit
+        self._enter(key)
+
+    def say_doubts(self, section: str) -> None:
+        """Say beside each entry of a section what the truth may be."""
+        for key, state in self.fields.items():
+            if not key.startswith(f"{section}."):
+                continue
+            entry = self.job.entries.get(key)
+            said = None if entry is None or entry.value is None else self.doubt_of(key, entry)
+            if said != state.doubt:
+                state.doubt = said
 
     def choose(self, key: str, value: str) -> None:
         """Make a choice."""
@@ -210,7 +234,8 @@ class Sheet:
         state = self.fields[key]
         state.refused = state.note = ""
         if not state.typed.strip():
-            state.remark = state.level = ""
+            state.remark = state.level = state.kit = ""
+            state.doubt = None
             self._put(self.job.with_entry(key, None), _section(key))
             return
         value = None
@@ -219,7 +244,7 @@ class Sheet:
             value, state.unit, state.note = reading.value, reading.unit, reading.note
         except UnitError as error:
             state.refused = str(error)
-        entry = Entry(value, state.unit, state.source, typed=state.typed)
+        entry = Entry(value, state.unit, state.source, state.kit, typed=state.typed)
         if key == "water.hardness":
             self._follow(state.unit)
         self._put(self.job.with_entry(key, entry), _section(key))
@@ -278,7 +303,7 @@ def _field_state(field: Field, entry: Entry | None, units: Mapping[str, str]) ->
     if entry is None:
         return FieldState(field.key, unit=_usual_unit(field, units), source=field.usual_source)
     typed = entry.typed or ("" if entry.value is None else f"{entry.value:g}")
-    return FieldState(field.key, typed, entry.unit, entry.source)
+    return FieldState(field.key, typed, entry.unit, entry.source, kit=entry.kit)
 
 
 def _usual_unit(field: Field, units: Mapping[str, str]) -> str:

@@ -16,8 +16,11 @@ from typing import Any
 import flet as ft
 
 from core.errors import TapwrightError
-from core.job.fields import FURTHER_PARTS, ON_DEMAND
-from core.job.record import Job
+from core.job import kits
+from core.job.answers import Phrase
+from core.job.fields import FURTHER_PARTS, ON_DEMAND, field_for
+from core.job.kits import Kit
+from core.job.record import Entry, Job
 from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
 from pwa.services.host import Host
@@ -80,6 +83,7 @@ class Preferences:
     """The settings in force."""
 
     settings: Settings = field(default_factory=Settings)
+    own_kits: tuple[Kit, ...] = ()
 
 
 class Workspace:
@@ -92,6 +96,7 @@ class Workspace:
         self.preferences, self.notice = Preferences(), Notice()
         self.sheets: dict[str, Sheet] = {}
         self._assess: Callable[[Job], Any] | None = None
+        self._doubt: Callable[..., Any] | None = None
         self._resting: dict[str, asyncio.Task[None]] = {}
 
     # Opening
@@ -108,15 +113,23 @@ class Workspace:
         self.standing.read_only = not self.storage.can_write
         self.standing.trouble = " ".join(self.storage.notes)
         self.preferences.settings = Settings.from_text(await self.storage.get_setting("settings"))
+        await self._read_own_kits()
         await self.list_again()
         await self._bring_in_calculator()
+
+    async def _read_own_kits(self) -> None:
+        try:
+            self.preferences.own_kits = kits.from_text(await self.storage.get_setting("kits") or "")
+        except TapwrightError as error:
+            self.standing.trouble = f"Your own kits could not be read. {error}"
 
     async def _bring_in_calculator(self) -> None:
         self.host.on_change(self._host_changed)
         await self.host.load_numpy()
         from core.job import assess  # it needs numpy, which has only now arrived
+        from core.job.doubts import doubt
 
-        self._assess = assess
+        self._assess, self._doubt = assess, doubt
         self.standing.computing = True
         for sheet in self.sheets.values():
             self._assess_sheet(sheet, sheet.layout.sections)
@@ -196,6 +209,7 @@ class Workspace:
 
     def _open_sheet(self, job: Job) -> Sheet:
         sheet = Sheet(job, self._changed, self._units)
+        sheet.own_kits, sheet.doubt_of = self.preferences.own_kits, self._doubt_of
         self._assess_sheet(sheet, sheet.layout.sections)
         return sheet
 
@@ -244,6 +258,16 @@ class Workspace:
             return
         assessment = self._assess(sheet.job)
         sheet.take({section: getattr(assessment, section) for section in sections})
+        for section in sections:
+            sheet.say_doubts(section)
+
+    def _doubt_of(self, key: str, entry: Entry) -> Phrase | None:
+        """What the truth may be where this was entered; None where nothing is doubted, or nothing is computed yet."""
+        known = field_for(key)
+        if self._doubt is None or known is None:
+            return None
+        held = self._doubt(entry, known, self.preferences.own_kits)
+        return None if held.is_none else held.words
 
     def _keep(self, sheet: Sheet) -> None:
         if self.standing.read_only:

@@ -24,6 +24,7 @@ from pwa.sheet.money import money_text, percent_text, plain_number
 from pwa.state.display import Display
 from pwa.text import NOTHING, format_number, format_quantity
 
+SETTINGS = {"softener": ("hardness", "meter", "salt", "interval", "reserve"), "blend": ("share",)}  # answers to be set
 OTHER = "Other ions"  # an assumption that is not about one entry
 _KEY = re.compile(r"\[([A-Z][A-Z0-9.-]+)(?:, (?:checked|secondary|from memory))?\]")
 MUST_DECIDE = (
@@ -74,6 +75,7 @@ def technical_sections(
     sources = Sources()
     found = [
         ("Entries", _entries(job, display)),
+        ("Settings", _settings(job, parts, display)),
         ("Assumed, not measured", _assumed(parts.values(), display, sources)),
         ("Choices", _choices(job)),
         *((f"{SECTIONS.get(key, key)}: answers", _answers(part, display)) for key, part in parts.items()),
@@ -133,6 +135,22 @@ def _assumed(parts: Iterable[Part], display: Display, sources: Sources) -> list[
         shown = NOTHING if assumption.amount is None else display.show(assumption.amount)
         rows.append((_label(key), shown, why))
     return [Table(("", "Value", "Why"), tuple(rows), (0.30, 0.20, 0.50), frozenset({1}))] if rows else []
+
+
+def _settings(job: Job, parts: Mapping[str, Part], display: Display) -> list[Block]:
+    """What is set at the valve head and at the blending valve, where it has been answered."""
+    rows = []
+    for section, keys in SETTINGS.items():
+        answers = parts[section].answers if section in parts else {}
+        rows += [
+            (answers[key].label, display.show(answers[key].amount), display.say(answers[key].words))
+            for key in keys
+            if key in answers
+        ]
+    target = job.entries.get("blend.target")
+    if target is not None and target.value is not None:
+        rows.append((_label("blend.target"), _entered(target, display), "Turn the blending valve until it comes out."))
+    return [Table(("", "Set to", ""), tuple(rows), (0.30, 0.20, 0.50), frozenset({1}))] if rows else []
 
 
 def _choices(job: Job) -> list[Block]:

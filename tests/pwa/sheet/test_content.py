@@ -117,6 +117,16 @@ def test_what_was_assumed_stands_apart_with_its_reason():
     assert len(table.rows) == len(assumed)
 
 
+def test_settings_are_listed_for_whoever_sets_them():
+    """Hardness, meter, salt and the blend, as they were answered; the wish of the customer in his own unit."""
+    rows = {row[0]: row[1] for row in blocks(sheet().technical, "Settings")[0].rows}
+    softener = assess(job()).softener
+
+    assert rows["Hardness to set"] == Display().show(softener.answers["hardness"].amount)
+    assert rows["Water between regenerations"] == Display().show(softener.answers["meter"].amount)
+    assert rows["Hardness wanted at the taps"] == "8.0\u00a0°dH"
+
+
 def test_what_was_not_understood_is_shown_as_typed():
     """A text that is no number is no value."""
     held = job().with_entry("demand.persons", Entry(None, "", "told", typed="four"))

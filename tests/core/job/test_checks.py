@@ -258,6 +258,11 @@ def test_a_sound_analysis_is_left_alone(name):
     assert rules(check_job(analysis(WATERS[name]))) <= {"limits of drinking water"}
 
 
+def test_a_routine_imbalance_is_let_pass():
+    """3 % of the charge, more than the method's 2 % but within what monitoring reports accept: not a word."""
+    assert not check_job(analysis(WATERS["moderately hard"], chloride=(39.9, "mg/L Cl")))
+
+
 def test_softened_water_is_recognised():
     """The hard limestone water behind a softener: the sample is asked about, nothing else is."""
     assert rules(check_job(analysis(SOFTENED))) == {"a sample from behind a softener"}

@@ -293,6 +293,14 @@ def test_how_it_was_understood_is_said():
     assert "German" in found.how
 
 
+def test_columns_copied_one_below_the_other_are_not_joined():
+    """Two names, then two numbers: which belongs to which is not asked as if it were likely."""
+    report = read_report("Calcium\nMagnesium\n92 mg/l\n18 mg/l")
+    assert not report.found
+    assert not report.questions
+    assert len(report.left) == 4
+
+
 def test_a_sure_reading_answers_a_question():
     """An ambiguous line that says the same as a sure one need not be asked."""
     report = read_report("Gesamthärte 17 °dH\nTotal hardness 303 mg/L")

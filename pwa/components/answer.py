@@ -14,6 +14,7 @@ from pwa.components.tone import TONES, ToneLine
 from pwa.state.display import Display
 from pwa.state.sheet import PartState
 
+LINE = 26.0
 TRACK = 4.0
 BAND = 12.0
 APART = 1.1  # of the line's 2, between ticks whose names share a line
@@ -47,7 +48,8 @@ def AnswerLine(answer: Answer, display: Display) -> ft.Control | None:
     scale = Scale.of([here, *(answer.band or ()), *(mark.at.value for mark in marks)])
     layers: list[ft.Control] = [_bar(-1.0, 1.0, TRACK, ft.Colors.OUTLINE_VARIANT)]
     if answer.band is not None:
-        layers.append(_bar(scale.x(answer.band[0]), scale.x(answer.band[1]), BAND, ft.Colors.PRIMARY_CONTAINER))
+        ends = (scale.x(answer.band[0]), scale.x(answer.band[1]))
+        layers.append(_bar(*ends, BAND, ft.Colors.PRIMARY_CONTAINER, edge=ft.Colors.PRIMARY))
     layers += [_tick(scale.x(mark.at.value), 16.0, 2.0, ft.Colors.ON_SURFACE_VARIANT) for mark in marks]
     layers.append(_tick(scale.x(here), 24.0, 6.0, ft.Colors.PRIMARY))
     names = [(scale.x(mark.at.value), f"{mark.name} {display.show(mark.at)}") for mark in marks]
@@ -57,19 +59,25 @@ def AnswerLine(answer: Answer, display: Display) -> ft.Control | None:
         container=True,
         content=ft.Column(
             spacing=2,
-            controls=[ft.Stack(height=26, controls=layers), *_name_rows(names)],
+            controls=[ft.Stack(height=LINE, controls=layers), *_name_rows(names)],
         ),
     )
 
 
-def _bar(left: float, right: float, height: float, colour: str) -> ft.Control:
+def _bar(left: float, right: float, height: float, colour: str, edge: str = "") -> ft.Control:
     before, width, after = (round(500 * part) for part in (left + 1.0, right - left, 1.0 - right))
     return ft.Row(
         spacing=0,
-        height=26,
+        height=LINE,
         controls=[
             ft.Container(expand=max(1, before)) if before > 0 else ft.Container(),
-            ft.Container(expand=max(1, width), height=height, bgcolor=colour, border_radius=height / 2),
+            ft.Container(
+                expand=max(1, width),
+                height=height,
+                bgcolor=colour,
+                border_radius=height / 2,
+                border=ft.Border.all(1, edge) if edge else None,
+            ),
             ft.Container(expand=max(1, after)) if after > 0 else ft.Container(),
         ],
     )
@@ -77,7 +85,7 @@ def _bar(left: float, right: float, height: float, colour: str) -> ft.Control:
 
 def _tick(x: float, height: float, width: float, colour: str) -> ft.Control:
     return ft.Container(
-        height=26,
+        height=LINE,
         alignment=ft.Alignment(x, 0.0),
         content=ft.Container(width=width, height=height, bgcolor=colour, border_radius=width / 2),
     )
@@ -144,9 +152,8 @@ def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Contro
         ),
         ft.Text(words, theme_style=ft.TextThemeStyle.BODY_LARGE),
     ]
-    drawn = AnswerLine(headline, display) if line else None
-    if drawn is not None:
-        controls.append(drawn)
+    if line:  # its room is kept, so that nothing moves under the thumb when the band arrives
+        controls.append(AnswerLine(headline, display) or ft.Container(height=LINE))
     return ft.Column(spacing=2, controls=[*controls, *lacks])
 
 

@@ -9,10 +9,12 @@ from pwa import theme
 from pwa.components.answer import AnswerStrip
 from pwa.components.entry import ChoiceField, EntryField
 from pwa.components.guard import guarded
+from pwa.components.how_sure import HowSure
 from pwa.components.notes import Answers, Further, Remarks
 from pwa.components.words import Disclosure
+from pwa.screens.sources import Limits, SourceList
 from pwa.state.display import Display
-from pwa.state.sheet import Layout, Sheet
+from pwa.state.sheet import Layout, PartState, Sheet
 from pwa.state.workspace import Preferences, Workspace
 
 CHOICE_FIRST = ("dose", "sources")  # sections in which a decision says which entries matter
@@ -41,13 +43,19 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                 controls=[
                     *_entries(sheet, section, display, often=True),
                     More(sheet, section, display),
+                    *(
+                        [SourceList(sheet.layout, sheet, shown), Limits(sheet.layout, sheet, display)]
+                        if section == "sources"
+                        else []
+                    ),
+                    HowSure(sheet.sure[section], sheet.job.id, shown),
                     Answers(sheet.parts[section], shown),
                     *[
                         control
                         for part in further
                         for control in (
                             Further(sheet.parts[part], PART_TITLES[part], sheet, shown, workspace.work_out),
-                            *_entries(sheet, section, display, often=True, part=part),
+                            PartEntries(sheet.parts[part], sheet, section, display),
                         )
                     ],
                     Remarks(sheet.parts[section], shown),
@@ -64,6 +72,15 @@ def _entries(sheet: Sheet, section: str, display: Display, *, often: bool, part:
     decided = [ChoiceField(sheet.choices[c.key], c.label, c.help, c.options, sheet, key=c.key) for c in choices]
     entered = [EntryField(sheet.fields[key], sheet, display, key=key) for key in fields]
     return [*decided, *entered] if section in CHOICE_FIRST else [*entered, *decided]
+
+
+@guarded
+def PartEntries(state: PartState, sheet: Sheet, section: str, display: Display) -> ft.Control:
+    """The entries that belong to a further part, once it has answers."""
+    controls = _entries(sheet, section, display, often=True, part=state.key)
+    if not controls or state.part is None or not state.part.answers:
+        return ft.Container(height=0)
+    return ft.Column(spacing=theme.PAD, controls=controls)
 
 
 @guarded

@@ -12,6 +12,7 @@ from pwa.components.answer import AnswerBlock, spoken
 from pwa.components.banner import Banners
 from pwa.components.box import Box
 from pwa.components.guard import guarded
+from pwa.components.how_sure import WhatNext
 from pwa.components.words import Disclosure, Note, Tappable
 from pwa.state.display import Display
 from pwa.state.sheet import Heading, Layout, PartState, Sheet
@@ -21,6 +22,7 @@ from pwa.state.workspace import Preferences, Workspace
 @guarded
 def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chosen: str = "") -> ft.Control:
     """Name, place, and the cards."""
+    ft.use_effect(lambda: workspace.see_how_sure(sheet), [sheet.job.id])
     return ft.Column(
         expand=True,
         spacing=0,
@@ -33,6 +35,7 @@ def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chos
                 spacing=theme.PAD,
                 controls=[
                     HeadingFields(sheet.heading, sheet),
+                    WhatNext(sheet.sure["softener"], sheet.job.id, lambda: workspace.display(sheet)),
                     Cards(sheet.layout, sheet, workspace, chosen),
                     SectionsShown(sheet.layout, sheet),
                 ],

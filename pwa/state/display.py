@@ -122,6 +122,11 @@ class Display:
         """A phrase with its amounts in this user's units."""
         return phrase.render(self.show)
 
+    def between(self, lowest: Amount, highest: Amount) -> str:
+        """Two amounts in words: "20.5 to 23.5 gpg"."""
+        unit = unit_shown(self._turned(lowest)[1])
+        return f"{self.show(lowest).removesuffix(f'{GAP}{unit}')} to {self.show(highest)}"
+
     def say_as_read(self, phrase: Phrase) -> str:
         """A phrase with its amounts in the units they were read in."""
         said = phrase.render(lambda amount: format_quantity(amount.value, amount.unit, self.decimal))

@@ -29,6 +29,7 @@ from core.job.fields import (
 from core.job.kits import HowRead, Kit
 from core.job.record import Entry, Job
 from core.job.source_fields import MOST, parameters_of, source_numbers
+from pwa.state.sureness import SureState
 from pwa.text import parse_quantity
 
 
@@ -139,11 +140,12 @@ class Sheet:
         self.heading = Heading(job.name, job.place, job.notes)
         further = (part for parts in FURTHER_PARTS.values() for part in parts)
         self.parts = {key: PartState(key) for key in (*SECTIONS, *further)}
+        self.sure = {key: SureState(key) for key in SECTIONS}
+        self.own_kits: tuple[Kit, ...] = ()
+        self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed
         self.fields = _Made(self._field, FIELDS)
         self.choices = _Made(self._choice, CHOICES)
         self.layout = Layout.of(job)
-        self.own_kits: tuple[Kit, ...] = ()
-        self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed
         self.looked_at = ""  # the section on the screen: what it shows further is kept up to date
 
     @property
@@ -206,15 +208,25 @@ class Sheet:
             self.choose(f"sources.{free}.name", f"Source {free}")
         return free
 
-    def remove_source(self, number: int) -> None:
-        """Take a source out of the job, with all that was entered for it."""
+    def remove_source(self, number: int) -> Callable[[], None]:
+        """Take a source out of the job, with all that was entered for it; gives the way back."""
         own = f"sources.{number}."
         for states in (self.fields, self.choices):
             for key in [key for key in states if key.startswith(own)]:
                 del states[key]
-        entries = {key: entry for key, entry in self.job.entries.items() if not key.startswith(own)}
-        choices = {key: choice for key, choice in self.job.choices.items() if not key.startswith(own)}
-        self._put(replace(self.job, entries=entries, choices=choices), "sources")
+        before = self.job
+        entries = {key: entry for key, entry in before.entries.items() if not key.startswith(own)}
+        choices = {key: choice for key, choice in before.choices.items() if not key.startswith(own)}
+        self._put(replace(before, entries=entries, choices=choices), "sources")
+
+        def put_back() -> None:
+            held = {key: entry for key, entry in before.entries.items() if key.startswith(own)}
+            chosen = {key: choice for key, choice in before.choices.items() if key.startswith(own)}
+            now = self.job
+            again = replace(now, entries={**now.entries, **held}, choices={**now.choices, **chosen})
+            self._put(again, "sources")
+
+        return put_back
 
     def rename(self, name: str | None = None, place: str | None = None, notes: str | None = None) -> None:
         """Change the words that name the job."""
@@ -263,7 +275,9 @@ class Sheet:
         self._changed(self, section)
 
     def _field(self, key: str) -> FieldState:
-        state = _field_state(_known(key), self.job.entries.get(key), self._units(self.hardness_unit))
+        entry = self.job.entries.get(key)
+        state = _field_state(_known(key), entry, self._units(self.hardness_unit))
+        state.doubt = self.doubt_of(key, entry) if entry is not None else None
         held = self.parts.get(_section(key))
         problems = held.part.problems if held is not None and held.part is not None else ()
         problem = next((problem for problem in problems if problem.field == key), None)

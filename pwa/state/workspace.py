@@ -28,6 +28,7 @@ from pwa.services.storage import JobRow, Storage, StorageError
 from pwa.state.display import UNIT_SETS, Display, unit_set_for
 from pwa.state.settings import Settings
 from pwa.state.sheet import Sheet
+from pwa.state.spreading import Spreading
 from pwa.theme import SCALES, WIDE
 
 log = logging.getLogger("tapwright")
@@ -98,6 +99,7 @@ class Workspace:
         self._assess: Callable[[Job], Any] | None = None
         self._doubt: Callable[..., Any] | None = None
         self._resting: dict[str, asyncio.Task[None]] = {}
+        self._spreading = Spreading()
 
     # Opening
 
@@ -134,6 +136,7 @@ class Workspace:
         for sheet in self.sheets.values():
             self._assess_sheet(sheet, sheet.layout.sections)
             await self._further(sheet)
+            self.see_how_sure(sheet)
 
     def _host_changed(self) -> None:
         self.standing.update_waits = self.host.update_waits()
@@ -217,6 +220,7 @@ class Workspace:
         if section:
             self._assess_sheet(sheet, (section,))
         self._keep(sheet)
+        self._spreading.stop(sheet)
         job_id = sheet.job.id
         resting = self._resting.pop(job_id, None)
         if resting is not None:
@@ -230,6 +234,12 @@ class Workspace:
             await asyncio.sleep(0)
         self._keep(sheet)
         await self._further(sheet)
+        self.see_how_sure(sheet)
+
+    def see_how_sure(self, sheet: Sheet) -> None:
+        """Have it worked out at leisure how sure the answers are."""
+        if self._assess is not None:
+            self._spreading.begin(sheet)
 
     async def look(self, sheet: Sheet, section: str) -> None:
         """Say which section is on the screen; what it shows further is worked out at leisure."""
@@ -237,6 +247,7 @@ class Workspace:
         if sheet.parts[section].part is None:
             self._assess_sheet(sheet, (section,))
         await self._further(sheet)
+        self.see_how_sure(sheet)
 
     def work_out(self, sheet: Sheet, part: str) -> None:
         """Make a part that was asked for."""

@@ -2,7 +2,7 @@
 
 import flet as ft
 
-from core.job.record import Job
+from core.job.record import Entry, Job
 from tests.pwa.fake_page import FakePage
 from tests.pwa.services.loops import run
 from tests.pwa.test_screens import opened
@@ -93,5 +93,67 @@ def test_a_reading_that_does_not_belong_is_pointed_out():
         assert app.page.reads("Reading 5 (30) does not belong")
         await press(app.page, "Leave it out")
         assert not app.page.reads("does not belong")
+
+    run(story())
+
+
+async def until(app, condition, most: float = 20.0) -> None:
+    """Wait until something holds."""
+    for _ in range(int(most / 0.1)):
+        await app.page.settle(0.1)
+        if condition():
+            return
+    raise AssertionError(f"it did not come to hold; there is: {app.page.texts()}")
+
+
+STRIP = {
+    "water.hardness": Entry(425.0, "mg/L CaCO3", "measured", "test strip, steps in mg/L"),
+    "demand.persons": Entry(5.0),
+    "demand.bathrooms": Entry(2.0),
+}
+
+
+async def strip_job(app):
+    """The sheet of a job that rests on a strip, on the screen of its softener."""
+    job_id = await app.workspace.add_copy(Job(id="", entries=STRIP))
+    await app.go(f"/job/{job_id}/softener")
+    sheet = app.workspace.sheets[job_id]
+    await until(app, lambda: sheet.sure["softener"].known)
+    return sheet
+
+
+def test_a_job_on_strip_readings_says_how_sure_it_is_and_what_to_measure():
+    """Odds of the size, the next test by name; the same once more, and another once that test is entered."""
+
+    async def story() -> None:
+        app = await opened()
+        sheet = await strip_job(app)
+        assert app.page.reads("of resin is enough")
+        advised = sheet.sure["softener"].next
+        assert advised is not None
+        assert advised.field == "water.hardness"
+        assert app.page.reads(app.workspace.display(sheet).say(advised.words))
+        again = await strip_job(app)
+        assert again.sure["softener"].odds == sheet.sure["softener"].odds
+        assert again.parts["softener"].part.headline.band == sheet.parts["softener"].part.headline.band
+        again.set_source("water.hardness", "measured", "digital titrator, 1 mg/L a count")
+        assert again.sure["softener"].stale
+        await until(app, lambda: not again.sure["softener"].stale)
+        assert again.sure["softener"].odds != sheet.sure["softener"].odds
+
+    run(story())
+
+
+def test_a_new_name_changes_no_odds():
+    """What was worked out stays when only the name of the job changes."""
+
+    async def story() -> None:
+        app = await opened()
+        sheet = await strip_job(app)
+        before = sheet.sure["softener"].odds
+        sheet.rename(name="Lane 4")
+        await until(app, lambda: not sheet.sure["softener"].stale, most=2.0)
+        assert sheet.sure["softener"].odds == before
+        assert sheet.parts["softener"].part.headline.band is not None
 
     run(story())

@@ -121,6 +121,7 @@ def _below(field: Field, state: FieldState, sheet: Sheet, display: Display, open
     controls: list[ft.Control] = [ft.Row(spacing=theme.GAP, controls=[_source(field, state, sheet, open_), *beside])]
     if state.remark and state.level == "warning":
         controls.append(ToneLine("watch", state.remark))
+    controls += [ToneLine("watch", text) for text in state.odd if text != state.remark]
     return controls
 
 

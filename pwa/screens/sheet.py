@@ -11,6 +11,7 @@ from pwa import theme
 from pwa.components.answer import AnswerBlock, spoken
 from pwa.components.banner import Banners
 from pwa.components.box import Box
+from pwa.components.findings import LookAgain
 from pwa.components.guard import guarded
 from pwa.components.how_sure import WhatNext
 from pwa.components.words import Disclosure, Note, Tappable
@@ -35,6 +36,7 @@ def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chos
                 spacing=theme.PAD,
                 controls=[
                     HeadingFields(sheet.heading, sheet),
+                    LookAgain(sheet.findings, sheet.job.id),
                     WhatNext(sheet.sure["softener"], sheet.job.id, lambda: workspace.display(sheet)),
                     Cards(sheet.layout, sheet, workspace, chosen),
                     SectionsShown(sheet.layout, sheet),

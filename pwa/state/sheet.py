@@ -14,7 +14,7 @@ from typing import TypeVar
 import flet as ft
 
 from core.errors import UnitError
-from core.job.answers import Part, Phrase
+from core.job.answers import Part, Phrase, Problem
 from core.job.fields import (
     CHOICES,
     FIELDS,
@@ -47,6 +47,7 @@ class FieldState:
     remark: str = ""  # what the checks say of the value
     level: str = ""  # of the remark: warning | error
     kit: str = ""  # what it was measured with, as kept in the entry
+    odd: tuple[str, ...] = ()  # what the checks of the whole job say of it
     doubt: Phrase | None = None  # what the truth may be; None where nothing is to be said
 
 
@@ -120,6 +121,14 @@ class _Made(dict[str, State]):
 
 @ft.observable
 @dataclass
+class Findings:
+    """What the checks of the whole job find odd."""
+
+    rows: tuple[Problem, ...] = ()
+
+
+@ft.observable
+@dataclass
 class Heading:
     """Name and place of the job."""
 
@@ -140,6 +149,7 @@ class Sheet:
         self.heading = Heading(job.name, job.place, job.notes)
         further = (part for parts in FURTHER_PARTS.values() for part in parts)
         self.parts = {key: PartState(key) for key in (*SECTIONS, *further)}
+        self.findings = Findings()
         self.sure = {key: SureState(key) for key in SECTIONS}
         self.own_kits: tuple[Kit, ...] = ()
         self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed
@@ -242,9 +252,22 @@ class Sheet:
             self.parts[key].put(part)
             self._remark(key, part)
 
+    def take_findings(self, found: tuple[Problem, ...]) -> None:
+        """Show what the checks of the whole job say, beside the entries they are about."""
+        if found != self.findings.rows:
+            self.findings.rows = found
+        for key, state in self.fields.items():
+            odd = self._odd(key)
+            if odd != state.odd:
+                state.odd = odd
+
+    def _odd(self, key: str) -> tuple[str, ...]:
+        return tuple(problem.text for problem in self.findings.rows if problem.field == key)
+
     def _enter(self, key: str) -> None:
         state = self.fields[key]
         state.refused = state.note = ""
+        state.odd = ()
         if not state.typed.strip():
             state.remark = state.level = state.kit = ""
             state.doubt = None
@@ -277,6 +300,7 @@ class Sheet:
     def _field(self, key: str) -> FieldState:
         entry = self.job.entries.get(key)
         state = _field_state(_known(key), entry, self._units(self.hardness_unit))
+        state.odd = self._odd(key)
         state.doubt = self.doubt_of(key, entry) if entry is not None else None
         held = self.parts.get(_section(key))
         problems = held.part.problems if held is not None and held.part is not None else ()

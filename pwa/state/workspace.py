@@ -98,6 +98,7 @@ class Workspace:
         self.sheets: dict[str, Sheet] = {}
         self._assess: Callable[[Job], Any] | None = None
         self._doubt: Callable[..., Any] | None = None
+        self._check: Callable[..., Any] | None = None
         self._resting: dict[str, asyncio.Task[None]] = {}
         self._spreading = Spreading()
 
@@ -129,12 +130,14 @@ class Workspace:
         self.host.on_change(self._host_changed)
         await self.host.load_numpy()
         from core.job import assess  # it needs numpy, which has only now arrived
+        from core.job.checks import check_job
         from core.job.doubts import doubt
 
-        self._assess, self._doubt = assess, doubt
+        self._assess, self._doubt, self._check = assess, doubt, check_job
         self.standing.computing = True
         for sheet in self.sheets.values():
             self._assess_sheet(sheet, sheet.layout.sections)
+            self._check_sheet(sheet)
             await self._further(sheet)
             self.see_how_sure(sheet)
 
@@ -214,6 +217,7 @@ class Workspace:
         sheet = Sheet(job, self._changed, self._units)
         sheet.own_kits, sheet.doubt_of = self.preferences.own_kits, self._doubt_of
         self._assess_sheet(sheet, sheet.layout.sections)
+        self._check_sheet(sheet)
         return sheet
 
     def _changed(self, sheet: Sheet, section: str) -> None:
@@ -232,6 +236,7 @@ class Workspace:
         for section in sheet.layout.sections:
             self._assess_sheet(sheet, (section,))
             await asyncio.sleep(0)
+        self._check_sheet(sheet)
         self._keep(sheet)
         await self._further(sheet)
         self.see_how_sure(sheet)
@@ -271,6 +276,10 @@ class Workspace:
         sheet.take({section: getattr(assessment, section) for section in sections})
         for section in sections:
             sheet.say_doubts(section)
+
+    def _check_sheet(self, sheet: Sheet) -> None:
+        if self._check is not None:
+            sheet.take_findings(self._check(sheet.job, sheet.own_kits))
 
     def _doubt_of(self, key: str, entry: Entry) -> Phrase | None:
         """What the truth may be where this was entered; None where nothing is doubted, or nothing is computed yet."""

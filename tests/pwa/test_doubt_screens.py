@@ -157,3 +157,22 @@ def test_a_new_name_changes_no_odds():
         assert sheet.parts["softener"].part.headline.band is not None
 
     run(story())
+
+
+def test_what_is_odd_stands_beside_its_entry_and_on_the_sheet():
+    """300 gpg is taken for a slip of the unit; once it is put right, nothing is odd any more."""
+
+    async def story() -> None:
+        app = await opened()
+        job_id = await app.workspace.new()
+        await app.go(f"/job/{job_id}/water")
+        await app.page.type("Total hardness", "300 gpg")
+        await app.page.settle(0.6)
+        assert app.page.reads("did you mean 300 mg/L CaCO3?")
+        await app.go(f"/job/{job_id}")
+        assert app.page.reads("Look again")
+        app.workspace.sheets[job_id].type("water.hardness", "300 mg/L CaCO3")
+        await app.page.settle(0.6)
+        assert not app.page.reads("Look again")
+
+    run(story())

@@ -49,15 +49,19 @@ def write_worker(site: Path, config: dict[str, object]) -> None:
     (site / "worker.js").write_text(_filled("worker.js", {"CONFIG": json.dumps(complete)}), encoding="utf-8")
 
 
-def write_page(site: Path, base: str, first_load_mb: int) -> None:
-    """Write the page with its scripts, the manifest and the icons. [first load in MB as sent]"""
+def write_page(site: Path, base: str, *, stored_mb: int, started_mb: int) -> None:
+    """Write the page with its scripts, the manifest and the icons.
+
+    The splash names what a first start fetches: all that is stored, or what one start alone takes. [MB as sent]
+    """
     values = COLOURS | {
         "NAME": html.escape(NAME),
         "DESCRIPTION": html.escape(DESCRIPTION),
         "BASE": html.escape(normal_base(base)),
         "CSP": CONTENT_SECURITY_POLICY,
         "MARK": mark_svg('class="ink"', 'class="drop"', attributes=' aria-hidden="true"'),
-        "FIRST_LOAD_MB": str(first_load_mb),
+        "STORED_MB": str(stored_mb),
+        "STARTED_MB": str(started_mb),
         "ENGINE_REVISION": engine_revision(),
         "FONT": FONT,
     }

@@ -64,6 +64,11 @@ class _CountingHandler(SiteHandler):
             return
         super()._answer(with_body=with_body)
 
+    def _send(self, status: HTTPStatus, headers: dict[str, str], body: bytes) -> None:
+        if status is HTTPStatus.OK:
+            self.server.sent.append(self.path)
+        super()._send(status, headers, body)
+
 
 class CountingServer(SiteServer):
     """A server that remembers what it was asked, can refuse paths, and can go down and come back."""
@@ -71,6 +76,7 @@ class CountingServer(SiteServer):
     def __init__(self, site: Path, base: str = "/") -> None:
         super().__init__(site, base=base, handler=_CountingHandler)
         self.requests: list[str] = []
+        self.sent: list[str] = []  # answered with the file, not with "unchanged"
         self.refused: set[str] = set()
         self.down = False
 

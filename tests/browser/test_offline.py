@@ -18,6 +18,29 @@ def test_first_load_is_clean(site, serve, visit):
     assert not [path for path in server.requests if "fonts/none" in path]
 
 
+def test_nothing_large_is_sent_twice(site, serve, visit):
+    """Storing the app for offline use takes from the browser's cache what the first start has just fetched."""
+    server = serve(site)
+    visit().open(server.url).wait_until_offline_ready()
+
+    twice = {path for path in server.sent if server.sent.count(path) > 1}
+    assert sum((server.file_for(path)).stat().st_size for path in twice) < 100_000, twice
+
+
+def test_storing_that_fails_is_not_called_ready(probe_site, serve, visit):
+    """When a file cannot be stored, the app runs on and says that it will not open without a network."""
+    server = serve(probe_site)
+    server.refused = {"/icons/icon-512.png"}
+    first = visit().open(server.url, "probe one")
+    first.wait_until("navigator.serviceWorker.getRegistration().then(found => !found?.installing && !found?.active)")
+    first.page.wait_for_timeout(500)
+    assert first.host("offline_state()") == "unavailable"
+
+    server.refused = set()
+    first.reload("probe one").wait_until_offline_ready()
+    assert first.host("offline_state()") == "ready"
+
+
 def test_installs(site, serve, visit):
     """The browser finds nothing that keeps the app from being installed, and no fault in its manifest."""
     first = visit().open(serve(site).url).wait_until_offline_ready()

@@ -1,7 +1,7 @@
 // What is on the screen until the app draws: a word on what is being done, or why it cannot be done.
 (() => {
   "use strict";
-  const FIRST_LOAD_MB = __FIRST_LOAD_MB__;
+  const [STORED_MB, STARTED_MB] = [__STORED_MB__, __STARTED_MB__]; // fetched to be kept; fetched to start alone
   const STAGES = { fetching: "Fetching the app.", starting: "Starting.", opening: "Opening." };
   const [splash, stage, note, reason, reload] = ["splash", "splash-stage", "splash-note", "splash-error", "splash-reload"]
     .map((id) => document.getElementById(id));
@@ -26,8 +26,9 @@
 
   // Only what is known to be so: where nothing can be stored, nothing is promised about later starts.
   if (!navigator.serviceWorker?.controller) {
-    note.textContent = `This start fetches about ${FIRST_LOAD_MB} MB.`;
-    if (navigator.serviceWorker) note.textContent += " Once that is stored, it opens without a network.";
+    note.textContent = navigator.serviceWorker
+      ? `The first start fetches about ${STORED_MB} MB. Once that is stored, the app opens without a network.`
+      : `This start fetches about ${STARTED_MB} MB.`;
   }
   reload.addEventListener("click", () => location.reload());
   addEventListener("flutter-first-frame", () => splash.remove(), { once: true });

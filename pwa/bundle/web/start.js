@@ -7,6 +7,11 @@
   // Flet's client reads these.
   globalThis.flet = { pyodide: true, multiView: false, noCdn: true, routeUrlStrategy: "hash" };
 
+  // WebKit brings a page back from its back/forward cache with Flutter's frames stopped; only a new start helps.
+  addEventListener("pageshow", (event) => {
+    if (event.persisted && navigator.vendor?.startsWith("Apple")) location.reload();
+  });
+
   // For a character that no font here has (an emoji in a name, say) the engine asks for further font files, again at
   // every layout. It is given the app's own font instead: the character stays blank, and no request leaves the page.
   const fetchFromSite = globalThis.fetch;

@@ -25,7 +25,11 @@
       // On the very first visit the new worker takes over by itself: there is no older version to leave.
       tell({ update: Boolean(registration.waiting && registration.active) });
     };
-    const follow = (worker) => worker?.addEventListener("statechange", report);
+    const follow = (worker) => worker?.addEventListener("statechange", () => {
+      report();
+      // It could not store every file: no room, or a network that broke off. The next start tries again.
+      if (worker.state === "redundant" && !registration.active) tell({ offline: "unavailable" });
+    });
     follow(registration.installing);
     registration.addEventListener("updatefound", () => follow(registration.installing));
     report();

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import ast
 import hashlib
+import tomllib
 
 import pytest
 
@@ -66,6 +67,13 @@ def test_without_any_source_it_says_what_to_do(monkeypatch):
 
     for part in ("no route", "another hash", numpy_wheel.FILE, numpy_wheel.SHA256):
         assert part in str(caught.value)
+
+
+def test_browser_and_desk_compute_with_the_same_numpy():
+    """The wheel for the browser is of the release that the project asks for."""
+    project = tomllib.loads((ROOT / "pyproject.toml").read_text(encoding="utf-8"))["project"]
+
+    assert f"numpy=={numpy_wheel.VERSION}" in project["dependencies"]
 
 
 def _subjects(source: str) -> set[str]:

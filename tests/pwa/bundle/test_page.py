@@ -18,7 +18,7 @@ CONFIG = {"libraryFile": "/library.zip", "appFile": "/app.zip", "version": 'quot
 @pytest.fixture
 def site(tmp_path):
     """Our own part of a site."""
-    write_page(tmp_path, "./", first_load_mb=23)
+    write_page(tmp_path, "./", stored_mb=26, started_mb=23)
     write_worker(tmp_path, CONFIG)
     write_service_worker(tmp_path, {"index.html": "1"}, "abc")
     return tmp_path

@@ -4,6 +4,7 @@
     /settings          settings
     /job/ID            the sheet of a job
     /job/ID/SECTION    one of its sections; beside the sheet on a wide screen
+    /job/ID/sources/3  one of its sources
 """
 
 from __future__ import annotations
@@ -11,7 +12,7 @@ from __future__ import annotations
 import flet as ft
 
 from pwa import theme
-from pwa.screens.job import JobView, SectionView
+from pwa.screens.job import JobView, SectionView, SourceView
 from pwa.screens.jobs import JobsView
 from pwa.screens.settings import SettingsView
 from pwa.state.settings import Settings
@@ -37,10 +38,11 @@ def App(workspace: Workspace, preferences: Preferences, notice: Notice) -> ft.Co
 
 def _routes(workspace: Workspace) -> list[ft.Route]:
     standing, preferences = workspace.standing, workspace.preferences
-    section = ft.Route(path=":section", component=lambda: SectionView(workspace, standing, preferences))
-    job = ft.Route(
-        path="job/:job_id", component=lambda: JobView(workspace, standing, preferences), children=[section]
+    source = ft.Route(path=":source", component=lambda: SourceView(workspace, standing, preferences))
+    section = ft.Route(
+        path=":section", component=lambda: SectionView(workspace, standing, preferences), children=[source]
     )
+    job = ft.Route(path="job/:job_id", component=lambda: JobView(workspace, standing, preferences), children=[section])
     settings = ft.Route(path="settings", component=lambda: SettingsView(workspace, preferences))
     return [ft.Route(path="/", component=lambda: JobsView(workspace), children=[settings, job])]
 

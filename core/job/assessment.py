@@ -16,6 +16,8 @@ from core.job.record import Job
 from core.job.run_out import assess_run_out
 from core.job.scale import assess_scale
 from core.job.softener import Softener, assess_softener
+from core.job.sources import Mixing, assess_sources
+from core.job.sources_turns import assess_turns
 from core.job.water import assess_water
 
 
@@ -79,6 +81,20 @@ class Assessment:
     def jars(self) -> Part:
         """Six jars around the dose."""
         return assess_jars(self._dosing)
+
+    @cached_property
+    def sources(self) -> Part:
+        """Several wells or streams to one demand."""
+        return self._mixing.part
+
+    @cached_property
+    def turns(self) -> Part:
+        """The settings as now, and with each source off."""
+        return assess_turns(self._mixing)
+
+    @cached_property
+    def _mixing(self) -> Mixing:
+        return assess_sources(self.job)
 
     @cached_property
     def _dosing(self) -> Dosing:

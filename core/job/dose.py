@@ -189,7 +189,8 @@ def _residuals(
     doses = ", ".join(f"{{dose_{i}}} of {f.words}" for i, f in enumerate(fed))
     shown = {f"dose_{i}": Amount(f.dose, "g/m³") for i, f in enumerate(fed)}
     missed = "" if book.reached else " This chemical alone cannot come down to what is wanted."
-    text = f"With {doses}, as sold: textbook {{book}}, equilibrium {{settled}}, practice {{low}} to {{high}}.{missed}"
+    reached = "practice {low} to {high}" if ends[1] > ends[0] else "and practice no lower"
+    text = f"With {doses}, as sold: textbook {{book}}, equilibrium {{settled}}, {reached}.{missed}"
     words = say(text, **shown, book=_hard(textbook), settled=_hard(settled), low=_hard(ends[0]), high=_hard(ends[1]))
     tone = "watch" if not book.reached or ends[1] > target * 1.001 else "plain"
     return [
@@ -200,7 +201,7 @@ def _residuals(
             words,
             leading(practice),
             marks,
-            band=(ends[0], ends[1]),
+            band=(ends[0], ends[1]) if ends[1] > ends[0] else None,
             tone=tone,
         ),
         Answer(

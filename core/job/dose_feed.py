@@ -33,12 +33,17 @@ class Fed:
     @property
     def words(self) -> str:
         """What the product is called."""
-        return self.product.words
+        return _words(self.product)
 
     @property
     def pure_as_reagent(self) -> float:
         """The pure dose as the chemistry counts it: quicklime as the hydrated lime it turns into. [mg/L]"""
         return self.pure * REAGENTS[self.chemical].molar_mass / self.product.molar_mass
+
+
+def _words(product: Product) -> str:
+    """What it is called: the grade of soda ash matters to the hopper, not to the dose."""
+    return "soda ash" if product.pure == "soda_ash" else product.words
 
 
 def fed_products(ledger: Ledger, amounts: dict[str, float]) -> tuple[Fed, ...]:
@@ -62,7 +67,7 @@ def _fed(ledger: Ledger, chemical: str, product: Product, amount: float) -> Fed:
         pure=Amount(pure, "g/m³"),
     )
     answer = Answer(
-        chemical, product.words[0].upper() + product.words[1:], Amount(dose, "g/m³"), words, w.leading_to(dose)
+        chemical, _words(product)[0].upper() + _words(product)[1:], Amount(dose, "g/m³"), words, w.leading_to(dose)
     )
     return Fed(chemical, product, pure, dose, purity, answer)
 

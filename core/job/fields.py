@@ -243,6 +243,8 @@ def field_for(key: str) -> Field | None:
 
 def choice_for(key: str) -> Choice | None:
     """The choice of that name, of the tables or made by rule; None where there is none."""
+    if key == SECTION_CHOICE:
+        return Choice(key, "Sections", (), " ".join(USUAL_SECTIONS))
     return CHOICES.get(key) or source_choice(key)
 
 
@@ -269,6 +271,7 @@ SECTIONS: dict[str, str] = {
     "softener": "Softener",
     "blend": "Blend",
     "dose": "Dose",
+    "sources": "Sources",
 }
 SECTION_WORDS = {
     "water": "What the kit or the report says",

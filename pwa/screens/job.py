@@ -10,6 +10,7 @@ from pwa.components.guard import guarded
 from pwa.components.job_row import named
 from pwa.screens.section import SectionPane
 from pwa.screens.sheet import SheetPane
+from pwa.screens.sources import SourcePane
 from pwa.state.sheet import Heading, Sheet
 from pwa.state.workspace import Preferences, Standing, Workspace
 
@@ -43,6 +44,21 @@ def SectionView(workspace: Workspace, standing: Standing, preferences: Preferenc
     return _view(f"/job/{job_id}/{section}", sheet, panes, title)
 
 
+@guarded
+def SourceView(workspace: Workspace, standing: Standing, preferences: Preferences) -> ft.View:
+    """One source of the Sources section; on a wide screen beside the sheet."""
+    params = ft.use_route_params()
+    job_id, place = params.get("job_id", ""), params.get("source", "")
+    number = int(place) if place.isascii() and place.isdigit() else 0
+    sheet = use_sheet(workspace, job_id)
+
+    def panes(sheet: Sheet) -> ft.Control:
+        pane = SourcePane(sheet, number, sheet.layout, workspace, preferences, key=f"source-{number}")
+        return _beside(workspace, preferences, sheet, "sources", pane) if standing.wide else pane
+
+    return _view(f"/job/{job_id}/sources/{place}", sheet, panes, None if standing.wide else "Source")
+
+
 def use_sheet(workspace: Workspace, job_id: str) -> Sheet | None:
     """The open sheet of a job; None while it is being read."""
     sheet, set_sheet = ft.use_state(workspace.sheets.get(job_id))
@@ -59,6 +75,11 @@ def _sheet(
 ) -> ft.Control:
     if not standing.wide:
         return SheetPane(sheet, workspace, preferences)
+    pane = SectionPane(sheet, section, workspace, preferences, key=section)
+    return _beside(workspace, preferences, sheet, section, pane)
+
+
+def _beside(workspace: Workspace, preferences: Preferences, sheet: Sheet, section: str, pane: ft.Control) -> ft.Control:
     return ft.Row(
         expand=True,
         spacing=0,
@@ -69,7 +90,7 @@ def _sheet(
                 border=ft.Border.only(right=ft.BorderSide(1, ft.Colors.OUTLINE_VARIANT)),
                 content=SheetPane(sheet, workspace, preferences, section),
             ),
-            ft.Container(expand=True, content=SectionPane(sheet, section, workspace, preferences, key=section)),
+            ft.Container(expand=True, content=pane),
         ],
     )
 

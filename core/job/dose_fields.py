@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from core.job.field import COMMON, DAILY, FLOW, HARD, Choice, Default, Field
 
 JARS = 6
@@ -217,7 +219,11 @@ _JARS = (
     ),
 )
 
-DOSE_FIELDS: tuple[Field, ...] = (*_MAIN, *_WATER, *_FEED, *_JARS)
+_READ = ("dose.solution_temperature", "dose.soda_purity", "dose.lime_purity")  # the rest is decided, but for the jars
+DOSE_FIELDS: tuple[Field, ...] = (
+    *(replace(field, chosen=field.key not in _READ) for field in (*_MAIN, *_WATER, *_FEED)),
+    *(replace(field, chosen="jar_" not in field.key or field.key == "dose.jar_size") for field in _JARS),
+)
 
 DOSE_CHOICES: tuple[Choice, ...] = (
     Choice(

@@ -60,6 +60,7 @@ class Field:
     often: bool = True  # shown at once; otherwise behind "more"
     role: str = ""  # "resin", "daily volume": a kind of its quantity with units of its own
     part: str = ""  # the further part of its section that it stands in; "" for the section's own entries
+    chosen: bool = False  # decided, not read: no kit measures it, and nothing about it is in doubt
 
     @property
     def section(self) -> str:

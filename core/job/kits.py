@@ -107,7 +107,7 @@ def kits() -> tuple[Kit, ...]:
 
 def kits_for(field: Field, own: Sequence[Kit] = ()) -> tuple[Kit, ...]:
     """The kits that measure what this entry holds, the user's own first."""
-    return tuple(kit for kit in (*own, *kits()) if kit.fits(field))
+    return () if field.chosen else tuple(kit for kit in (*own, *kits()) if kit.fits(field))
 
 
 def find_kit(name: str, field: Field, own: Sequence[Kit] = ()) -> Kit | None:
@@ -121,6 +121,8 @@ def find_kit(name: str, field: Field, own: Sequence[Kit] = ()) -> Kit | None:
 
 def way_of(entry: Entry, field: Field, own: Sequence[Kit] = ()) -> Kit | None:
     """How an entry came to be known: its kit, else what stands for its source; None where nothing is known of it."""
+    if field.chosen:
+        return None
     if entry.source == "measured" and entry.kit:
         kit = find_kit(entry.kit, field, own)
         if kit is not None:

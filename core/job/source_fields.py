@@ -26,7 +26,16 @@ MORE_PARAMETERS = ("iron", "manganese", "chloride", "sulfate", "alkalinity", "po
 LIMITED_BY_CHEMISTRY = ("ph", "saturation")
 
 SOURCE_FIELDS: tuple[Field, ...] = (
-    Field("sources.demand", "Flow needed", "flow", FLOW, 0.0, 1e7, "By all sources together, at the hour that counts."),
+    Field(
+        "sources.demand",
+        "Flow needed",
+        "flow",
+        FLOW,
+        0.0,
+        1e7,
+        "By all sources together, at the hour that counts.",
+        chosen=True,
+    ),
 )
 SOURCE_CHOICES: tuple[Choice, ...] = (
     Choice(
@@ -107,7 +116,7 @@ def _of_blend(key: str, side: str, name: str) -> Field | None:
     unit = found.label.partition(",")[2] if not found.quantity and "," in found.label else ""
     label = f"{parameter_label(name)}, {_SIDES[side]}" + (f",{unit}" if unit else "")
     lowest = -found.highest if name == "saturation" else found.lowest
-    return replace(found, key=key, label=label, lowest=lowest, help="")
+    return replace(found, key=key, label=label, lowest=lowest, help="", chosen=True)
 
 
 def _short(label: str) -> str:
@@ -143,7 +152,7 @@ def source_choice(key: str) -> Choice | None:
         return None
     return {
         "name": Choice(key, "Name", (), f"Source {place}"),
-        "on": Choice(key, "It is", (("on", "on"), ("off", "off")), "on"),
+        "on": Choice(key, "Running", (("on", "on"), ("off", "off")), "on"),
         "may_stop": Choice(
             key,
             "When it is not wanted",

@@ -31,7 +31,8 @@ class Scale:
     def of(cls, values: list[float]) -> Scale:
         """A scale on which all values have their place, with some room at both ends."""
         low, high = min(values), max(values)
-        room = (high - low) * 0.12 or abs(high) * 0.5 or 1.0
+        apart = high - low if high - low > 1e-6 * abs(high) else 0.0  # a blend at its limit misses it by a hair
+        room = apart * 0.12 or abs(high) * 0.5 or 1.0
         return cls(max(0.0, low - room) if low >= 0.0 else low - room, high + room)
 
     def x(self, value: float) -> float:

@@ -118,7 +118,8 @@ def _below(field: Field, state: FieldState, sheet: Sheet, display: Display, open
     said = display.say_as_read(state.doubt) if state.doubt else ""
     words = " ".join(filter(None, (state.note, said)))
     beside = [_small(words, ft.Colors.ON_SURFACE_VARIANT)] if words else []
-    controls: list[ft.Control] = [ft.Row(spacing=theme.GAP, controls=[_source(field, state, sheet, open_), *beside])]
+    origin = [] if field.chosen else [_source(field, state, sheet, open_)]
+    controls: list[ft.Control] = [ft.Row(spacing=theme.GAP, controls=[*origin, *beside])] if origin or beside else []
     if state.remark and state.level == "warning":
         controls.append(ToneLine("watch", state.remark))
     controls += [ToneLine("watch", text) for text in state.odd if text != state.remark]

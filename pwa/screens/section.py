@@ -17,7 +17,7 @@ from pwa.state.display import Display
 from pwa.state.sheet import Layout, PartState, Sheet
 from pwa.state.workspace import Preferences, Workspace
 
-CHOICE_FIRST = ("dose", "sources")  # sections in which a decision says which entries matter
+CHOICE_FIRST = ("dose",)  # sections in which a decision says which entries matter
 
 
 @guarded
@@ -41,13 +41,10 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                 padding=theme.PAD,
                 spacing=theme.PAD,
                 controls=[
+                    *([SourceList(sheet.layout, sheet, shown)] if section == "sources" else []),
                     *_entries(sheet, section, display, often=True),
+                    *([Limits(sheet.layout, sheet, display)] if section == "sources" else []),
                     More(sheet, section, display),
-                    *(
-                        [SourceList(sheet.layout, sheet, shown), Limits(sheet.layout, sheet, display)]
-                        if section == "sources"
-                        else []
-                    ),
                     HowSure(sheet.sure[section], sheet.job.id, shown),
                     Answers(sheet.parts[section], shown),
                     *[

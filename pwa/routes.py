@@ -1,10 +1,11 @@
 """The route tree: one view for each level, so that back, swipe and deep links work.
 
-    /                  jobs
-    /settings          settings
-    /job/ID            the sheet of a job
-    /job/ID/SECTION    one of its sections; beside the sheet on a wide screen
-    /job/ID/sources/3  one of its sources
+/                  jobs
+/settings          settings
+/job/ID            the sheet of a job
+/job/ID/SECTION    one of its sections; beside the sheet on a wide screen
+/job/ID/paste      a report pasted, on its way into the job
+/job/ID/sources/3  one of its sources
 """
 
 from __future__ import annotations
@@ -14,6 +15,7 @@ import flet as ft
 from pwa import theme
 from pwa.screens.job import JobView, SectionView, SourceView
 from pwa.screens.jobs import JobsView
+from pwa.screens.paste import PasteView
 from pwa.screens.settings import SettingsView
 from pwa.state.settings import Settings
 from pwa.state.workspace import Notice, Preferences, Workspace
@@ -42,7 +44,10 @@ def _routes(workspace: Workspace) -> list[ft.Route]:
     section = ft.Route(
         path=":section", component=lambda: SectionView(workspace, standing, preferences), children=[source]
     )
-    job = ft.Route(path="job/:job_id", component=lambda: JobView(workspace, standing, preferences), children=[section])
+    paste = ft.Route(path="paste", component=lambda: PasteView(workspace))
+    job = ft.Route(
+        path="job/:job_id", component=lambda: JobView(workspace, standing, preferences), children=[paste, section]
+    )
     settings = ft.Route(path="settings", component=lambda: SettingsView(workspace, preferences))
     return [ft.Route(path="/", component=lambda: JobsView(workspace), children=[settings, job])]
 

@@ -20,9 +20,12 @@ def Box(
     weight: ft.FontWeight | None = None,
     hint: str = "",
     lines: int = 1,
+    grows: bool = True,
     expand: bool = False,
 ) -> ft.Control:
     """A field that shows `value` and calls `change` with the new text; `number` asks for the decimal keypad.
+
+    With `lines` above 1 it takes several; unless it `grows`, a longer text scrolls in it.
 
     It is a semantics node of its own. Without that its node takes in the text beside it, and is made anew when that
     text gives way to something to tap: the browser's input then loses what was typed.
@@ -39,6 +42,7 @@ def Box(
             enable_suggestions=not number,
             multiline=lines > 1,
             min_lines=lines if lines > 1 else None,
+            max_lines=None if grows else lines,
             error=error or None,
             error_max_lines=LONGEST_ERROR,
             text_style=ft.TextStyle(size=size, weight=weight),

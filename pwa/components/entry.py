@@ -16,7 +16,7 @@ from pwa.components.guard import guarded
 from pwa.components.menu import Menu
 from pwa.components.source import PROVENANCE, SourceButton, SourceSheet, offered_kits
 from pwa.components.tone import ToneLine
-from pwa.state.display import Display, unit_shown
+from pwa.state.display import Display, formulas_shown, unit_shown
 from pwa.state.field_test import FieldTest, kits_to_test
 from pwa.state.sheet import ChoiceState, FieldState, Sheet
 
@@ -122,7 +122,7 @@ def _below(field: Field, state: FieldState, sheet: Sheet, display: Display, open
     controls: list[ft.Control] = [ft.Row(spacing=theme.GAP, controls=[*origin, *beside])] if origin or beside else []
     if state.remark and state.level == "warning":
         controls.append(ToneLine("watch", state.remark))
-    controls += [ToneLine("watch", text) for text in state.odd if text != state.remark]
+    controls += [ToneLine("watch", formulas_shown(text)) for text in state.odd if text != state.remark]
     return controls
 
 

@@ -7,21 +7,20 @@ import flet as ft
 from core.job.answers import Problem
 from core.job.fields import field_for
 from pwa import theme
-from pwa.components.guard import guarded
 from pwa.components.words import Heading, Note, Tappable
+from pwa.state.display import formulas_shown
 from pwa.state.sheet import Findings
 
 MOST = 4  # shown on the sheet; all stand beside their entries
 
 
-@guarded
-def LookAgain(findings: Findings, job_id: str) -> ft.Control:
+def LookAgain(findings: Findings, job_id: str) -> list[ft.Control]:
     """The list on the sheet; nothing where all is well."""
     rows = findings.rows
     if not rows:
-        return ft.Container(height=0)
+        return []
     more = [Note(f"And {len(rows) - MOST} more, beside their entries.")] if len(rows) > MOST else []
-    return ft.Container(
+    listed = ft.Container(
         bgcolor=ft.Colors.SURFACE,
         border_radius=theme.RADIUS,
         border=ft.Border.all(1, ft.Colors.TERTIARY),
@@ -32,6 +31,7 @@ def LookAgain(findings: Findings, job_id: str) -> ft.Control:
             controls=[Heading("Look again"), *[_row(problem, job_id) for problem in rows[:MOST]], *more],
         ),
     )
+    return [listed]
 
 
 def _row(problem: Problem, job_id: str) -> ft.Control:
@@ -52,7 +52,7 @@ def _row(problem: Problem, job_id: str) -> ft.Control:
                     controls=[
                         ft.Text(label, weight=ft.FontWeight.W_600),
                         ft.Text(
-                            problem.text,
+                            formulas_shown(problem.text),
                             theme_style=ft.TextThemeStyle.BODY_SMALL,
                             color=ft.Colors.ON_SURFACE_VARIANT,
                         ),

@@ -34,12 +34,11 @@ def HowSure(state: SureState, job_id: str, shown: Callable[[], Display]) -> ft.C
     return ft.Column(spacing=6, horizontal_alignment=ft.CrossAxisAlignment.STRETCH, controls=controls)
 
 
-@guarded
-def WhatNext(state: SureState, job_id: str, shown: Callable[[], Display]) -> ft.Control:
+def WhatNext(state: SureState, job_id: str, display: Display) -> list[ft.Control]:
     """The one test that would make the recommendation surer; nothing where there is none."""
     if not state.known or state.next is None:
-        return ft.Container(height=0)
-    return NextTest(state.next, job_id, shown(), stale=state.stale)
+        return []
+    return [NextTest(state.next, job_id, display, stale=state.stale)]
 
 
 def NextTest(advice: Next, job_id: str, display: Display, *, stale: bool) -> ft.Control:

@@ -11,6 +11,7 @@ from pwa.components.entry import ChoiceField, EntryField
 from pwa.components.guard import guarded
 from pwa.components.how_sure import HowSure
 from pwa.components.notes import Answers, Further, Remarks
+from pwa.components.paste import PasteButton
 from pwa.components.words import Disclosure
 from pwa.screens.sources import Limits, SourceList
 from pwa.state.display import Display
@@ -44,6 +45,7 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
                     *([SourceList(sheet.layout, sheet, shown)] if section == "sources" else []),
                     *_entries(sheet, section, display, often=True),
                     *([Limits(sheet.layout, sheet, display)] if section == "sources" else []),
+                    *([PasteButton(sheet.job.id)] if section == "water" else []),
                     More(sheet, section, display),
                     HowSure(sheet.sure[section], sheet.job.id, shown),
                     Answers(sheet.parts[section], shown),

@@ -14,9 +14,11 @@ from pwa.components.box import Box
 from pwa.components.findings import LookAgain
 from pwa.components.guard import guarded
 from pwa.components.how_sure import WhatNext
+from pwa.components.paste import PasteButton
 from pwa.components.words import Disclosure, Note, Tappable
 from pwa.state.display import Display
-from pwa.state.sheet import Heading, Layout, PartState, Sheet
+from pwa.state.sheet import Findings, Heading, Layout, PartState, Sheet
+from pwa.state.sureness import SureState
 from pwa.state.workspace import Preferences, Workspace
 
 
@@ -36,13 +38,22 @@ def SheetPane(sheet: Sheet, workspace: Workspace, preferences: Preferences, chos
                 spacing=theme.PAD,
                 controls=[
                     HeadingFields(sheet.heading, sheet),
-                    LookAgain(sheet.findings, sheet.job.id),
-                    WhatNext(sheet.sure["softener"], sheet.job.id, lambda: workspace.display(sheet)),
+                    ToDo(sheet.findings, sheet.sure["softener"], sheet.job.id, lambda: workspace.display(sheet)),
                     Cards(sheet.layout, sheet, workspace, chosen),
                     SectionsShown(sheet.layout, sheet),
                 ],
             ),
         ],
+    )
+
+
+@guarded
+def ToDo(findings: Findings, sure: SureState, job_id: str, shown: Callable[[], Display]) -> ft.Control:
+    """What there is to do about the job as a whole: a report to paste, what is odd, what to measure next."""
+    return ft.Column(
+        spacing=theme.PAD,
+        horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
+        controls=[PasteButton(job_id), *LookAgain(findings, job_id), *WhatNext(sure, job_id, shown())],
     )
 
 

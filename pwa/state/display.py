@@ -84,6 +84,14 @@ def unit_shown(symbol: str) -> str:
     return _FORMULA.sub(lambda digits: digits[0].translate(_SUBSCRIPTS), symbol)
 
 
+_COMPOUND = re.compile(r"\b(?:CaCO|HCO|CO|SO|NO|NH|SiO)\d\b")
+
+
+def formulas_shown(text: str) -> str:
+    """A sentence with the chemical formulas in it as the trade writes them: "mg/L CaCO₃"."""
+    return _COMPOUND.sub(lambda found: found[0].translate(_SUBSCRIPTS), text)
+
+
 @dataclass(frozen=True, slots=True)
 class Display:
     """The units, the decimal sign and the text size in which a user reads answers."""

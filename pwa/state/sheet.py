@@ -189,6 +189,14 @@ class Sheet:
         state.typed, state.unit, state.source, state.kit = made.typed, made.unit, made.source, made.kit
         self._enter(key)
 
+    def put_entries(self, entries: Mapping[str, Entry | None]) -> None:
+        """Take over several entries, or empty them where there is None."""
+        for key, entry in entries.items():
+            if entry is None:
+                self.type(key, "")
+            else:
+                self.put_entry(key, entry)
+
     def say_doubts(self, section: str) -> None:
         """Say beside each entry of a section what the truth may be."""
         for key, state in self.fields.items():

@@ -366,6 +366,26 @@ class Workspace:
         except TapwrightError as not_a_job:
             return await self._restore(picked.data, str(not_a_job))
 
+    async def read_text(self) -> str | None:
+        """The text of a file the user picks; None where none was picked."""
+        try:
+            picked = await self.files.pick(["txt", "csv", "json"])
+        except FilesError as error:
+            self.notice.say(str(error))
+            return None
+        return None if picked is None else picked.data.decode("utf-8", errors="replace")
+
+    def take_over(self, sheet: Sheet, entries: Mapping[str, Entry]) -> None:
+        """Put entries out of a report into a job, with a way back."""
+        before = {key: sheet.job.entries.get(key) for key in entries}
+        sheet.put_entries(entries)
+
+        async def undo() -> None:
+            sheet.put_entries(before)
+
+        count = len(entries)
+        self.notice.say(f"{count} {'entry' if count == 1 else 'entries'} taken over.", undo)
+
     async def _restore(self, data: bytes, why_not_a_job: str) -> None:
         try:
             report = await self.storage.restore(data)

@@ -3,6 +3,7 @@
 import flet as ft
 
 from core.job.record import Entry, Job
+from pwa.text import GAP
 from tests.pwa.fake_page import FakePage
 from tests.pwa.services.loops import run
 from tests.pwa.test_screens import opened
@@ -174,5 +175,43 @@ def test_what_is_odd_stands_beside_its_entry_and_on_the_sheet():
         app.workspace.sheets[job_id].type("water.hardness", "300 mg/L CaCO3")
         await app.page.settle(0.6)
         assert not app.page.reads("Look again")
+
+    run(story())
+
+
+REPORT = """Waterworks Example, sample of 3 May
+Gesamthärte 17 °dH
+Calcium 92 mg/l
+pH 7,4
+Iron 0.2
+Colour: none to speak of
+"""
+
+
+def test_a_pasted_report_is_confirmed_value_by_value():
+    """Each value beside its words, a question where it is open, the rest in sight; and it can be undone."""
+
+    async def story() -> None:
+        app = await opened()
+        job_id = await app.workspace.add_copy(Job(id="", entries={"water.ph": Entry(7.1, "", "measured", "pH meter")}))
+        await app.go(f"/job/{job_id}/paste")
+        await app.page.type("Text of the report", REPORT)
+        await app.page.settle(0.5)
+        assert app.page.reads(f"Total hardness: 17{GAP}°dH")
+        assert app.page.reads("from “Calcium 92 mg/l”")
+        assert app.page.reads("The job holds 7.1, measured")
+        assert app.page.reads("Take over 2 entries")
+        await tap_on(app.page, f"0.2{GAP}mg/L Fe")
+        await press(app.page, "Take over 3 entries")
+        sheet = app.workspace.sheets[job_id]
+        held = {key: (entry.value, entry.unit, entry.source) for key, entry in sheet.job.entries.items()}
+        assert held == {
+            "water.hardness": (17.0, "°dH", "report"),
+            "water.calcium": (92.0, "mg/L Ca", "report"),
+            "water.iron": (0.2, "mg/L Fe", "report"),
+            "water.ph": (7.1, "", "measured"),
+        }
+        await app.workspace.notice.undo()
+        assert set(sheet.job.entries) == {"water.ph"}
 
     run(story())

@@ -5,7 +5,9 @@
 /job/ID            the sheet of a job
 /job/ID/SECTION    one of its sections; beside the sheet on a wide screen
 /job/ID/paste      a report pasted, on its way into the job
+/job/ID/share      the ways to hand a job over
 /job/ID/sources/3  one of its sources
+/join/PART         a job on its way in, by a link or a code
 """
 
 from __future__ import annotations
@@ -13,6 +15,7 @@ from __future__ import annotations
 import flet as ft
 
 from pwa import theme
+from pwa.screens.handover import JoinView, ShareView
 from pwa.screens.job import JobView, SectionView, SourceView
 from pwa.screens.jobs import JobsView
 from pwa.screens.paste import PasteView
@@ -45,11 +48,17 @@ def _routes(workspace: Workspace) -> list[ft.Route]:
         path=":section", component=lambda: SectionView(workspace, standing, preferences), children=[source]
     )
     paste = ft.Route(path="paste", component=lambda: PasteView(workspace))
+    share = ft.Route(path="share", component=lambda: ShareView(workspace, standing))
     job = ft.Route(
-        path="job/:job_id", component=lambda: JobView(workspace, standing, preferences), children=[paste, section]
+        path="job/:job_id",
+        component=lambda: JobView(workspace, standing, preferences),
+        children=[paste, share, section],
     )
+    joins = [
+        ft.Route(path=path, component=lambda: JoinView(workspace, workspace.jobs)) for path in ("join", "join/:part")
+    ]
     settings = ft.Route(path="settings", component=lambda: SettingsView(workspace, preferences))
-    return [ft.Route(path="/", component=lambda: JobsView(workspace), children=[settings, job])]
+    return [ft.Route(path="/", component=lambda: JobsView(workspace), children=[settings, job, *joins])]
 
 
 def put_on(page: ft.Page, settings: Settings) -> None:

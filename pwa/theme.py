@@ -18,6 +18,7 @@ PAD = 16
 TOUCH = 48  # the least height of anything to be tapped
 RADIUS = 10
 SHEET_WIDTH = 420  # of the sheet pane on a wide screen
+CODE = 320  # side of a QR code
 READING_WIDTH = 720  # a line of text is never longer than this
 WIDE = 840  # from here on, sheet and section stand side by side
 

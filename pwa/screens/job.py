@@ -14,6 +14,8 @@ from pwa.screens.sources import SourcePane
 from pwa.state.sheet import Heading, Sheet
 from pwa.state.workspace import Preferences, Standing, Workspace
 
+LEAVING = {"share": "To another phone, or as a message"}  # route below the job: what the menu calls it
+
 
 @guarded
 def JobView(workspace: Workspace, standing: Standing, preferences: Preferences) -> ft.View:
@@ -102,9 +104,25 @@ def _view(route: str, sheet: Sheet | None, content, title: str | None = None) ->
         route=route,
         padding=0,
         spacing=0,
-        appbar=ft.AppBar(title=bar, bgcolor=ft.Colors.SURFACE),
+        appbar=ft.AppBar(title=bar, bgcolor=ft.Colors.SURFACE, actions=[] if title else leave_menu(sheet)),
         controls=[ft.SafeArea(expand=True, content=body)],
     )
+
+
+def leave_menu(sheet: Sheet | None) -> list[ft.Control]:
+    """The ways in which a job leaves the phone."""
+    if sheet is None:
+        return []
+
+    def opener(place: str):
+        return lambda event: ft.context.page.navigate(f"/job/{sheet.job.id}/{place}")
+
+    menu = ft.PopupMenuButton(
+        icon=ft.Icons.IOS_SHARE,
+        tooltip="Hand over",
+        items=[ft.PopupMenuItem(content=words, on_click=opener(place)) for place, words in LEAVING.items()],
+    )
+    return [ft.Semantics(container=True, content=menu)]
 
 
 @guarded

@@ -23,8 +23,9 @@ from core.job.kits import Kit
 from core.job.record import Entry, Job
 from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
+from pwa.services.handover import HandoverError, arrival, file_of, read_file
 from pwa.services.host import Host
-from pwa.services.storage import JobRow, Storage, StorageError
+from pwa.services.storage import JobRow, Storage, StorageError, UnknownJobError
 from pwa.state.display import UNIT_SETS, Display, unit_set_for
 from pwa.state.settings import Settings
 from pwa.state.sheet import Sheet
@@ -187,6 +188,34 @@ class Workspace:
         """Put a job (a sample, an opened file) on the list under an id of its own."""
         return await self._add(replace(job, id=_new_id()))
 
+    async def join(self, job: Job) -> str:
+        """Put a job that was handed over on the list, overwriting nothing; gives its id, and says what became of it."""
+        await self._autosave.flush()
+        came = await arrival(job, self._kept_or_deleted)
+        if came.kind == "same":
+            await self.list_again()
+        else:
+            await self._add(came.job)
+        self.notice.say(came.sentence)
+        return came.job.id
+
+    async def kept(self, job_id: str) -> str | None:
+        """The job file kept here under an id; None where there is none."""
+        try:
+            return (await self.storage.load(job_id)).document
+        except UnknownJobError:
+            return None
+
+    async def _kept_or_deleted(self, job_id: str) -> str | None:
+        held = await self.kept(job_id)
+        if held is None:
+            try:
+                await self.storage.undelete(job_id)  # what would be written over comes back instead
+            except UnknownJobError:
+                return None
+            held = await self.kept(job_id)
+        return held
+
     async def delete(self, job_id: str) -> None:
         """Take a job off the list, with a way back."""
         await self._autosave.flush()
@@ -304,6 +333,10 @@ class Workspace:
             return self.display(sheet).say(answered.words)
         return next((part.missing[0].text for part in parts if part.missing), "")
 
+    def assessed(self, job: Job) -> Any:
+        """The whole assessment of a job; None until the calculator is in."""
+        return None if self._assess is None else self._assess(job)
+
     def display(self, sheet: Sheet | None = None) -> Display:
         """How answers are shown: the user's units, hardness in the unit that was typed in this job."""
         settings = self.preferences.settings
@@ -338,15 +371,16 @@ class Workspace:
     async def back_up(self) -> None:
         """Give the user one file with everything."""
         await self._autosave.flush()
-        await self._give("tapwright-backup.json", await self.storage.backup())
+        await self.give("tapwright-backup.json", await self.storage.backup())
 
     async def save_job_file(self, job_id: str) -> None:
         """Give the user the file of one job."""
         sheet = await self.sheet(job_id)
         if sheet is not None:
-            await self._give(f"{sheet.job.name.strip() or 'job'}.json", sheet.job.to_text().encode())
+            await self.give(*file_of(sheet.job))
 
-    async def _give(self, name: str, data: bytes) -> None:
+    async def give(self, name: str, data: bytes) -> None:
+        """Hand a file to the user."""
         try:
             await self.files.save(name, data)
         except FilesError as error:
@@ -362,9 +396,14 @@ class Workspace:
         if picked is None:
             return None
         try:
-            return await self.add_copy(Job.from_text(picked.data.decode("utf-8", errors="replace")))
-        except TapwrightError as not_a_job:
+            job = read_file(picked.data)
+        except HandoverError as not_a_job:
             return await self._restore(picked.data, str(not_a_job))
+        try:
+            return await self.join(job)
+        except StorageError as error:
+            self.notice.say(str(error))
+            return None
 
     async def read_text(self) -> str | None:
         """The text of a file the user picks; None where none was picked."""

@@ -6,6 +6,7 @@ from functools import cached_property
 
 from core.job.answers import Part
 from core.job.blend import assess_blend
+from core.job.blend_water import assess_blend_water
 from core.job.column import assess_column
 from core.job.demand import Demand, assess_demand
 from core.job.dose import Dosing, assess_dose
@@ -66,6 +67,11 @@ class Assessment:
     def blend(self) -> Part:
         """Raw water back into softened."""
         return assess_blend(self.job)
+
+    @cached_property
+    def blend_water(self) -> Part:
+        """The blend as a water, and what a fixed bypass does when demand swings."""
+        return assess_blend_water(self.job, self._softener)
 
     @cached_property
     def dose(self) -> Part:

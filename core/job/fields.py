@@ -168,6 +168,17 @@ _BLEND = (
         100.0,
         "At a tap after the valve was set: tells what the valve really does.",
     ),
+    Field(
+        "blend.set_flow",
+        "Flow when the valve was set",
+        "flow",
+        FLOW,
+        0.01,
+        1e6,
+        "A fixed bypass gives harder water when less is drawn. Leave empty for half the peak flow.",
+        often=False,
+        chosen=True,
+    ),
 )
 
 FIELDS: dict[str, Field] = {
@@ -251,6 +262,7 @@ def choice_for(key: str) -> Choice | None:
 # The parts of the assessment that a section shows after its own: each made when there is time for it.
 FURTHER_PARTS: dict[str, tuple[str, ...]] = {
     "softener": ("options", "run_out", "column"),
+    "blend": ("blend_water",),
     "dose": ("dose_water", "jars"),
     "sources": ("turns",),
 }
@@ -258,6 +270,7 @@ PART_TITLES = {
     "options": "Other ways to do it",
     "run_out": "How often it runs out",
     "column": "The same by a column model",
+    "blend_water": "The blend as a water, and at other flows",
     "dose_water": "What it does to the water",
     "jars": "Jar test",
     "turns": "One card for each case",

@@ -13,7 +13,8 @@ same (`sources.build_digest`). The steps stand in `build.build`:
   are apart, so that a new version of the app is a small download.
 - `archives` zips them, as bytecode of the browser's Python where Node is there to make it.
 - `snapshot` has Node make a memory image of the browser's Python with flet imported; web/controls.txt names what
-  is in it. The page restores the image; if it cannot, it starts plainly from the archives.
+  is in it. The page restores the image; if it cannot, it starts plainly from the archives. A name of flet that the
+  app uses at start belongs into that list.
 - `page` fills in index.html, the scripts and the worker in web/, which are ours.
 - `revisions` lists every file with its hash for the service worker, and writes .gz and .br copies.
 

@@ -3,7 +3,7 @@
 from dataclasses import dataclass
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from pwa.sheet.type import BODY, Style, lines_of, printable
@@ -51,6 +51,7 @@ def test_the_first_line_may_be_shorter():
     assert ten("abcdefgh", 8, first=4) == ["", "abcdefgh"]
 
 
+@settings(deadline=None)
 @given(st.text("abc \n", max_size=200), st.integers(1, 12), st.integers(0, 5))
 def test_no_sign_is_lost_and_no_line_too_wide(text, width, first):
     """Whatever the text and the width."""

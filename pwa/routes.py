@@ -6,6 +6,7 @@
 /job/ID/SECTION    one of its sections; beside the sheet on a wide screen
 /job/ID/paste      a report pasted, on its way into the job
 /job/ID/share      the ways to hand a job over
+/job/ID/sheet      the customer's sheet as a PDF
 /job/ID/sources/3  one of its sources
 /join/PART         a job on its way in, by a link or a code
 """
@@ -15,6 +16,7 @@ from __future__ import annotations
 import flet as ft
 
 from pwa import theme
+from pwa.screens.customer_sheet import CustomerSheetView
 from pwa.screens.handover import JoinView, ShareView
 from pwa.screens.job import JobView, SectionView, SourceView
 from pwa.screens.jobs import JobsView
@@ -49,10 +51,11 @@ def _routes(workspace: Workspace) -> list[ft.Route]:
     )
     paste = ft.Route(path="paste", component=lambda: PasteView(workspace))
     share = ft.Route(path="share", component=lambda: ShareView(workspace, standing))
+    leave = ft.Route(path="sheet", component=lambda: CustomerSheetView(workspace, standing))
     job = ft.Route(
         path="job/:job_id",
         component=lambda: JobView(workspace, standing, preferences),
-        children=[paste, share, section],
+        children=[paste, share, leave, section],
     )
     joins = [
         ft.Route(path=path, component=lambda: JoinView(workspace, workspace.jobs)) for path in ("join", "join/:part")

@@ -14,7 +14,10 @@ from pwa.screens.sources import SourcePane
 from pwa.state.sheet import Heading, Sheet
 from pwa.state.workspace import Preferences, Standing, Workspace
 
-LEAVING = {"share": "To another phone, or as a message"}  # route below the job: what the menu calls it
+LEAVING = {
+    "sheet": "Customer’s sheet (PDF)",
+    "share": "To another phone, or as a message",
+}  # route below the job: what the menu calls it
 
 
 @guarded
@@ -118,8 +121,19 @@ def leave_menu(sheet: Sheet | None) -> list[ft.Control]:
         return lambda event: ft.context.page.navigate(f"/job/{sheet.job.id}/{place}")
 
     menu = ft.PopupMenuButton(
-        icon=ft.Icons.IOS_SHARE,
         tooltip="Hand over",
+        content=ft.Container(
+            height=theme.TOUCH,
+            padding=ft.Padding.symmetric(horizontal=theme.PAD),
+            content=ft.Row(
+                spacing=theme.GAP,
+                tight=True,
+                controls=[
+                    ft.Icon(ft.Icons.IOS_SHARE, color=ft.Colors.PRIMARY),
+                    ft.Text("Hand over", color=ft.Colors.PRIMARY),
+                ],
+            ),
+        ),
         items=[ft.PopupMenuItem(content=words, on_click=opener(place)) for place, words in LEAVING.items()],
     )
     return [ft.Semantics(container=True, content=menu)]

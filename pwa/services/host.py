@@ -18,6 +18,9 @@ class Host(Protocol):
     async def load_numpy(self) -> None:
         """Bring numpy in; it is not part of the first load."""
 
+    async def load_pdf(self) -> None:
+        """Bring in what draws the PDF; may be called again."""
+
     def update_waits(self) -> bool:
         """Whether a new version is ready to be changed to."""
 
@@ -36,6 +39,9 @@ class NativeHost:
 
     async def load_numpy(self) -> None:
         """Nothing to do: numpy is installed."""
+
+    async def load_pdf(self) -> None:
+        """Nothing to do: it is installed."""
 
     def update_waits(self) -> bool:
         """Never."""
@@ -63,6 +69,10 @@ class PageHost:
     async def load_numpy(self) -> None:
         """Fetch and unpack numpy, after the first frame."""
         await self._page.load_numpy()
+
+    async def load_pdf(self) -> None:
+        """Fetch what draws the PDF; kept by the page once it is in."""
+        await self._page.load_pdf()
 
     def update_waits(self) -> bool:
         """Whether the service worker holds a new version."""

@@ -65,9 +65,7 @@ def FieldTestSheet(
                     ),
                     *_titrant(test, kit),
                     *_readings(test, kit, display),
-                    Box(
-                        "Sample filled up to … times its volume", test.dilution, _setter(test, "dilution"), number=True
-                    ),
+                    Box("Dilution", test.dilution, _setter(test, "dilution"), number=True),
                     *_outcome(test, kit, outcome, display),
                     _buttons(outcome, display, take_over, close),
                 ],

@@ -67,7 +67,7 @@ def SourceSheet(
     kit_rows = [row("measured", kit.words, kit.words, measured) for kit in kits]
     other_rows = [row(key, known.explained, "", known.icon) for key, known in PROVENANCE.items()]
     button = ft.FilledTonalButton(
-        "Count drops, or average readings", height=theme.TOUCH, on_click=lambda event: count() if count else None
+        "Count or average", height=theme.TOUCH, on_click=lambda event: count() if count else None
     )
     return ft.BottomSheet(
         show_drag_handle=True,

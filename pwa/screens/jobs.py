@@ -7,6 +7,7 @@ from typing import Any
 
 import flet as ft
 
+from core.job.answers import Amount
 from pwa import theme
 from pwa.components.banner import Banners
 from pwa.components.box import Box
@@ -63,7 +64,7 @@ def JobsView(workspace: Workspace) -> ft.View:
 def HardnessCard(preferences: Preferences, workspace: Workspace) -> ft.Control:
     """The converter with what was typed in it."""
     display = workspace.display()
-    start = "gpg" if preferences.settings.unit_set == "us" else "°dH"
+    start = display.unit_of(Amount(0.0, "mmol/L", "hardness"))
     (typed, unit), set_reading = ft.use_state(("", start))
     return ft.Container(
         bgcolor=ft.Colors.SURFACE,

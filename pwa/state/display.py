@@ -8,69 +8,8 @@ from dataclasses import dataclass, field
 
 from core.job.answers import Amount, Phrase
 from core.units import convert
+from pwa.state.unit_sets import UNIT_SETS
 from pwa.text import GAP, format_number, format_quantity
-
-# The unit of a quantity, or of a role (a kind of a quantity: resin among volumes), in each set. What is not named
-# keeps the unit it was computed in.
-UNIT_SETS: dict[str, dict[str, str]] = {
-    "metric": {
-        "hardness": "°dH",
-        "alkalinity": "mmol/L K_S4.3",
-        "resin": "L",
-        "volume": "L",
-        "large volume": "m³",
-        "daily volume": "L/day",
-        "flow": "L/min",
-        "water use": "L/person/day",
-        "specific flow": "BV/h",
-        "surface loading": "m/h",
-        "salt dose": "g/L",
-        "mass": "kg",
-        "mass flow": "kg/day",
-        "tank": "L",
-        "exchanged amount": "mol",
-        "load": "mol/day",
-        "salt efficiency": "mol/kg",
-        "temperature": "°C",
-        "length": "mm",
-        "depth": "cm",
-        "pressure": "kPa",
-        "share": "%",
-    },
-    "us": {
-        "hardness": "gpg",
-        "alkalinity": "mg/L CaCO3",
-        "resin": "ft³",
-        "volume": "US gal",
-        "large volume": "US gal",
-        "daily volume": "gpd",
-        "flow": "gpm",
-        "water use": "US gal/person/day",
-        "specific flow": "gpm/ft³",
-        "surface loading": "gpm/ft²",
-        "salt dose": "lb/ft³",
-        "mass": "lb",
-        "mass flow": "lb/day",
-        "tank": "US gal",
-        "exchanged amount": "grain",
-        "load": "grain/day",
-        "salt efficiency": "grain/lb",
-        "temperature": "°F",
-        "length": "in",
-        "depth": "in",
-        "pressure": "psi",
-        "share": "%",
-    },
-}
-UNIT_SET_NAMES = {"auto": "By the hardness unit", "metric": "Metric", "us": "US"}
-
-
-def unit_set_for(chosen: str, hardness_unit: str = "") -> str:
-    """The unit set that a choice means: "auto" is US where the hardness was read in grains per gallon."""
-    if chosen in UNIT_SETS:
-        return chosen
-    return "us" if hardness_unit == "gpg" else "metric"
-
 
 _WHOLE = ("°C", "°F")  # read in whole degrees, shown so where they are whole
 _SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
@@ -104,9 +43,8 @@ class Display:
     def unit_of(self, amount: Amount) -> str:
         """The unit an amount is shown in."""
         units = UNIT_SETS[self.unit_set]
-        if amount.role in units:
-            return units[amount.role]
-        return self.own.get(amount.quantity) or units.get(amount.quantity, amount.unit)
+        by_role = self.own.get(amount.role) or units.get(amount.role)
+        return by_role or self.own.get(amount.quantity) or units.get(amount.quantity, amount.unit)
 
     def figure(self, amount: Amount) -> tuple[str, str]:
         """The number and the unit of an amount, as texts."""

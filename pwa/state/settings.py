@@ -10,8 +10,10 @@ from dataclasses import asdict, dataclass, fields
 class Settings:
     """How the app looks and speaks to this user."""
 
-    unit_set: str = "auto"  # a key of display.UNIT_SETS, or "auto": by the unit the hardness was read in
+    unit_set: str = "auto"  # a key of unit_sets.UNIT_SETS, or "auto": by the unit the hardness was read in
+    own_units: str = ""  # what is shown otherwise than in the set; see unit_sets.own_units
     decimal: str = "."
+    region: str = ""  # whose rules a new job begins with; "" leaves it open
     ground: str = "system"  # system | light | dark
     contrast: bool = False
     text: str = "normal"  # a key of theme.SCALES

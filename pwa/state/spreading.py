@@ -44,6 +44,10 @@ class Spreading:
             if state.known and not state.stale:
                 state.stale = True
 
+    def forget(self) -> None:
+        """What was found no longer holds for any job: the kits have changed."""
+        self._held.clear()
+
     def begin(self, sheet: Sheet) -> None:
         """Work out the section on the screen, then what the recommendation rests on."""
         plans = list(dict.fromkeys([PLANS.get(sheet.looked_at, SIZING), SIZING]))

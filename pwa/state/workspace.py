@@ -26,10 +26,11 @@ from pwa.services.files import Files, FilesError
 from pwa.services.handover import HandoverError, arrival, file_of, read_file
 from pwa.services.host import Host
 from pwa.services.storage import JobRow, Storage, StorageError, UnknownJobError
-from pwa.state.display import UNIT_SETS, Display, unit_set_for
+from pwa.state.display import Display
 from pwa.state.settings import Settings
 from pwa.state.sheet import Sheet
 from pwa.state.spreading import Spreading
+from pwa.state.unit_sets import UNIT_SETS, own_units, unit_set_for
 from pwa.theme import SCALES, WIDE
 
 log = logging.getLogger("tapwright")
@@ -182,7 +183,9 @@ class Workspace:
 
     async def new(self) -> str:
         """Begin an empty job; gives its id."""
-        return await self._add(Job(id=_new_id()))
+        region = self.preferences.settings.region
+        job = Job(id=_new_id())
+        return await self._add(job.with_choice("softener.region", region) if region else job)
 
     async def add_copy(self, job: Job) -> str:
         """Put a job (a sample, an opened file) on the list under an id of its own."""
@@ -341,12 +344,13 @@ class Workspace:
         """How answers are shown: the user's units, hardness in the unit that was typed in this job."""
         settings = self.preferences.settings
         unit = sheet.hardness_unit if sheet is not None else ""
-        own = {"hardness": unit} if unit else {}
+        own = {**own_units(settings.own_units), **({"hardness": unit} if unit else {})}
         return Display(unit_set_for(settings.unit_set, unit), settings.decimal, SCALES[settings.text], own)
 
     def _units(self, hardness_unit: str) -> Mapping[str, str]:
-        own = {"hardness": hardness_unit} if hardness_unit else {}
-        return UNIT_SETS[unit_set_for(self.preferences.settings.unit_set, hardness_unit)] | own
+        settings = self.preferences.settings
+        own = {**own_units(settings.own_units), **({"hardness": hardness_unit} if hardness_unit else {})}
+        return UNIT_SETS[unit_set_for(settings.unit_set, hardness_unit)] | own
 
     async def _add(self, job: Job) -> str:
         sheet = self._open_sheet(job)
@@ -365,6 +369,35 @@ class Workspace:
         self.preferences.settings = replace(self.preferences.settings, **changes)
         try:
             await self.storage.set_setting("settings", self.preferences.settings.to_text())
+        except StorageError as error:
+            self.notice.say(str(error))
+
+    async def keep_kit(self, kit: Kit, instead_of: str = "") -> None:
+        """Add one of the user's own kits, or put it in the place of the one of that name."""
+        own = self.preferences.own_kits
+        places = [at for at, held in enumerate(own) if held.words == instead_of]
+        kept = [kit if at in places else held for at, held in enumerate(own)]
+        await self._set_kits(tuple(kept if places else [*kept, kit]))
+
+    async def remove_kit(self, name: str) -> None:
+        """Take one of the user's own kits away, with a way back; entries keep its name."""
+        before = self.preferences.own_kits
+
+        async def undo() -> None:
+            await self._set_kits(before)
+
+        await self._set_kits(tuple(kit for kit in before if kit.words != name))
+        self.notice.say("Kit removed.", undo)
+
+    async def _set_kits(self, own: tuple[Kit, ...]) -> None:
+        self.preferences.own_kits = own
+        self._spreading.forget()
+        for sheet in self.sheets.values():
+            sheet.own_kits = own
+            for section in sheet.layout.sections:
+                self._assess_sheet(sheet, (section,))
+        try:
+            await self.storage.set_setting("kits", kits.to_text(own))
         except StorageError as error:
             self.notice.say(str(error))
 

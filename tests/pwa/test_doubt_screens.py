@@ -1,8 +1,14 @@
 """How sure an entry and an answer are, on a page without a browser."""
 
+import asyncio
+
 import flet as ft
 
+from core.job.answers import Amount
 from core.job.record import Entry, Job
+from pwa.services.host import NativeHost
+from pwa.state.unit_sets import with_own_unit
+from pwa.state.workspace import Workspace
 from pwa.text import GAP
 from tests.pwa.fake_page import FakePage
 from tests.pwa.services.loops import run
@@ -68,7 +74,7 @@ def test_drops_counted_fill_the_entry():
         await app.page.type("Drops 1", "11")
         await press(app.page, "Read once more")
         await app.page.type("Drops 2", "12")
-        await app.page.type("Sample filled up to … times its volume", "2")
+        await app.page.type("Dilution", "2")
         assert app.page.reads("Mean of 2")
         await press(app.page, "Take over")
         entry = await kept(app, job_id, "water.hardness")
@@ -213,5 +219,50 @@ def test_a_pasted_report_is_confirmed_value_by_value():
         }
         await app.workspace.notice.undo()
         assert set(sheet.job.entries) == {"water.ph"}
+
+    run(story())
+
+
+def test_an_own_kit_is_kept_offered_first_and_counts():
+    """A kit of the user's own: half a grain a drop; 20 drops are 10 gpg, and the next start still knows it."""
+
+    async def story() -> None:
+        app = await opened()
+        await app.go("/settings")
+        await press(app.page, "Add a kit")
+        assert app.page.reads("Enter what a drop is worth")
+        await app.page.type("Name", "my half-grain kit")
+        await app.page.type("A drop is worth, gpg", "0,5")
+        await press(app.page, "Keep this kit")
+        again = Workspace(lambda: asyncio.sleep(0, app.storage), app.files, NativeHost())
+        await again.open()
+        assert [(kit.words, kit.resolution, kit.unit) for kit in again.preferences.own_kits] == [
+            ("my half-grain kit", 0.5, "gpg")
+        ]
+        job_id = await app.workspace.add_copy(Job(id="", entries={"water.hardness": Entry(10.0, "gpg", "measured")}))
+        await app.go(f"/job/{job_id}/water")
+        await tap_on(app.page, "Where Total hardness comes from")
+        await tap_on(app.page, "my half-grain kit")
+        assert app.page.reads(f"9.5 to 10.5{GAP}gpg")
+        state = app.workspace.sheets[job_id].fields["water.hardness"]
+        await app.workspace.remove_kit("my half-grain kit")
+        assert state.doubt.amounts["lowest"].value == 9.0  # as of a kit that is not named: 10 %, at least 1 gpg
+        await app.workspace.notice.undo()
+        assert state.doubt.amounts["lowest"].value == 9.5
+
+    run(story())
+
+
+def test_units_follow_the_set_and_what_was_chosen_before_it():
+    """French: hardness in °fH, pressure in bar; then flow alone in gallons a minute."""
+
+    async def story() -> None:
+        app = await opened()
+        await app.workspace.set(unit_set="fr", own_units=with_own_unit("", "flow", "gpm"))
+        display = app.workspace.display()
+        assert display.show(Amount(1.0, "mmol/L", "hardness")) == f"10.0{GAP}°fH"  # 1 °fH = 10 mg/L CaCO3 = 0.1 mmol/L
+        assert display.show(Amount(100.0, "kPa", "pressure")).endswith("bar")
+        assert display.show(Amount(3.785411784, "L/min", "flow")) == f"1.0{GAP}gpm"  # the US gallon, exact
+        assert display.unit_of(Amount(1.0, "L/day", "flow", "daily volume")) == "L/day"
 
     run(story())

@@ -40,7 +40,19 @@ def App(workspace: Workspace, preferences: Preferences, notice: Notice) -> ft.Co
     ft.use_effect(begin, [])
     ft.use_effect(lambda: put_on(page, preferences.settings), [preferences.settings])
     ft.use_dialog(_snack_bar(notice, lambda: set_seen(notice.turn)) if notice.turn > seen else None)
-    return ft.Router(_routes(workspace), manage_views=True, not_found=lambda: JobsView(workspace))
+    return ft.Router(_routes(workspace), manage_views=True, not_found=Lost)
+
+
+def Lost() -> ft.Control:
+    """What stands at an address that leads nowhere: the way home."""
+    return ft.SafeArea(
+        content=ft.Column(
+            controls=[
+                ft.Text("There is nothing at this address."),
+                ft.FilledButton("To the jobs", height=theme.TOUCH, on_click=lambda: ft.context.page.navigate("/")),
+            ]
+        )
+    )
 
 
 def _routes(workspace: Workspace) -> list[ft.Route]:

@@ -11,6 +11,8 @@ from core.treatment import blending
 from core.treatment.blending import SodiumLimit
 from core.working import Step
 
+SAME = 0.02  # of the raw hardness: no kit tells the blend from the target more closely
+
 
 def assess_blend(job: Job) -> Part:
     """Bypass share for the hardness wanted, the share a measured blend betrays, and sodium at the tap."""
@@ -121,6 +123,8 @@ def _measured(ledger: Ledger, raw: float, softened: float, target: float | None)
     amount = Amount(share, "1", "share")
     if target is None:
         words = "So much raw water goes past the resin now."
+    elif abs(measured - target) <= SAME * raw:
+        words = "So much raw water goes past the resin, as wanted: leave the valve as it is."
     elif measured > target:
         words = "So much raw water goes past the resin now: close the valve a little."
     else:

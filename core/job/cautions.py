@@ -65,7 +65,8 @@ HOT_ANODE = Caution(
 SCALD = Caution(
     "scald",
     "danger",
-    "Water above 50 °C scalds. Before working on a heater switch it off, let it cool, and relieve the pressure.",
+    "Water above 50 °C (122 °F) scalds. Before working on a heater switch it off, let it cool, and relieve the "
+    "pressure.",
     "common practice, no source",
 )
 

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from math import isnan
 
-from core.job.answers import Amount, Answer, Assumption, Part, say
+from core.job.answers import Amount, Answer, Assumption, Part, Problem, say
 from core.job.ledger import Ledger
 from core.job.record import Job
 from core.treatment import demand, peak_flow
@@ -18,6 +19,7 @@ class Demand:
     """What later parts need of the demand; None where an entry is missing."""
 
     ledger: Ledger
+    total: float | None  # L/day in all
     volume: float | None  # L/day that is softened
     peak: float | None  # L/min
     part: Part
@@ -27,7 +29,8 @@ def assess_demand(job: Job) -> Demand:
     """Daily volume and peak flow with their working."""
     ledger = Ledger(job)
     answers = []
-    volume = _volume(ledger)
+    total = _total(ledger)
+    volume = _softened(ledger, total)
     if volume is not None:
         answers.append(_volume_answer(ledger, volume))
     peak, rule = _peak(ledger)
@@ -45,21 +48,25 @@ def assess_demand(job: Job) -> Demand:
                 ledger.working.leading_to(year),
             )
         )
-    return Demand(ledger, volume, peak, ledger.part("demand", answers))
+    return Demand(ledger, total, volume, peak, ledger.part("demand", answers))
 
 
-def _volume(ledger: Ledger) -> float | None:
-    share = ledger.read("demand.softened_share")
-    if share is None:
-        return None
+def _total(ledger: Ledger) -> float | None:
     metered = ledger.read("demand.daily_volume")
     if metered is not None:
-        return ledger.working.step(demand.softened_volume, volume=metered, softened_share=share)
+        return metered
     persons = ledger.need("demand.persons", "Enter the persons, or the use by the meter, for the daily volume.")
     per_person = _per_person(ledger)
     if persons is None or per_person is None:
         return None
-    return ledger.working.step(demand.daily_volume, persons=persons, per_person=per_person, softened_share=share)
+    return ledger.working.step(demand.daily_volume, persons=persons, per_person=per_person)
+
+
+def _softened(ledger: Ledger, total: float | None) -> float | None:
+    share = ledger.read("demand.softened_share")
+    if total is None or share is None:
+        return None
+    return ledger.working.step(demand.softened_volume, volume=total, softened_share=share)
 
 
 def _per_person(ledger: Ledger) -> float | None:
@@ -83,7 +90,13 @@ def _peak(ledger: Ledger) -> tuple[float | None, str]:
     )
     if bathrooms is None:
         return None, rule
-    return _peak_by(ledger, rule, bathrooms), rule
+    peak = _peak_by(ledger, rule, bathrooms)
+    if isnan(peak):
+        units = household_fixture_units(bathrooms)
+        text = peak_flow.why_no_peak_flow(units, rule) if rule != "din" else "The formula does not reach so far."
+        ledger.problems["demand.bathrooms"] = Problem("demand.bathrooms", "error", text)
+        return None, rule
+    return peak, rule
 
 
 def _peak_by(ledger: Ledger, rule: str, bathrooms: float) -> float:
@@ -127,6 +140,8 @@ def _other_rules(ledger: Ledger, rule: str) -> list[Answer]:
         if other == rule:
             continue
         flow = _peak_by(ledger, other, bathrooms)
+        if isnan(flow):
+            continue
         answers.append(
             Answer(
                 f"peak_{other}",

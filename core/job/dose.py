@@ -201,7 +201,6 @@ def _residuals(
             words,
             leading(practice),
             marks,
-            band=(ends[0], ends[1]) if ends[1] > ends[0] else None,
             tone=tone,
         ),
         Answer(

@@ -32,6 +32,7 @@ CORE_UNITS = {
     "ammonium": "mg/L NH4",
     "silica": "mg/L SiO2",
     "mass": "kg",
+    "pressure": "kPa",
 }
 
 
@@ -70,6 +71,8 @@ class Field:
     @property
     def usual_source(self) -> str:
         """Where it comes from until the user says otherwise: what the kit reads is measured, the rest is told."""
+        if self.section == "signoff" and not self.chosen:
+            return "measured"
         if self.section == "water" or self.key in ("blend.softened", "blend.measured") or "jar_" in self.key:
             return "measured"
         return "told"

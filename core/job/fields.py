@@ -11,6 +11,7 @@ from collections.abc import Mapping
 
 from core.job.dose_fields import DOSE_CHOICES, DOSE_FIELDS
 from core.job.field import DAILY, FLOW, HARD, Choice, Default, Field
+from core.job.signoff_fields import SIGNOFF_CHOICES, SIGNOFF_FIELDS
 from core.job.source_fields import SOURCE_CHOICES, SOURCE_FIELDS, source_choice, source_field
 from core.job.water_fields import WATER_FIELDS
 from core.treatment.regions import REGIONS
@@ -249,14 +250,14 @@ CHOICES: dict[str, Choice] = {
 
 def field_for(key: str) -> Field | None:
     """The entry of that name, of the tables or made by rule; None where there is none."""
-    return FIELDS.get(key) or source_field(key)
+    return FIELDS.get(key) or SIGNOFF_FIELDS.get(key) or source_field(key)
 
 
 def choice_for(key: str) -> Choice | None:
     """The choice of that name, of the tables or made by rule; None where there is none."""
     if key == SECTION_CHOICE:
         return Choice(key, "Sections", (), " ".join(USUAL_SECTIONS))
-    return CHOICES.get(key) or source_choice(key)
+    return CHOICES.get(key) or SIGNOFF_CHOICES.get(key) or source_choice(key)
 
 
 # The parts of the assessment that a section shows after its own: each made when there is time for it.

@@ -31,7 +31,9 @@ def _kind(task: Task, kind: str) -> Answer:
     found = replace(task, kind=kind).search()
     pick = pick_of(found)
     volume = Amount(found.beds[pick.bed].resin_volume, "L", "volume", "resin")
-    return Answer(f"kind_{kind}", KIND_NAMES[kind], volume, _fate(found, pick), tone=_tone(found, pick))
+    return Answer(
+        f"kind_{kind}", KIND_NAMES[kind], volume, _fate(found, pick, task.salt_factor), tone=_tone(found, pick)
+    )
 
 
 def _neighbours(task: Task, volume: float) -> list[Answer]:
@@ -47,11 +49,11 @@ def _neighbours(task: Task, volume: float) -> list[Answer]:
             alone = task.search(bed)
             pick = pick_of(alone)
             amount = Amount(size, "L", "volume", "resin")
-            answers.append(Answer(key, label, amount, _fate(alone, pick), tone=_tone(alone, pick)))
+            answers.append(Answer(key, label, amount, _fate(alone, pick, task.salt_factor), tone=_tone(alone, pick)))
     return answers
 
 
-def _fate(found: Search, pick: Pick) -> Phrase:
+def _fate(found: Search, pick: Pick, factor: float) -> Phrase:
     figures = found.figures(pick)
     if isnan(figures["interval"]):
         return say("Nothing is known of it at this salt setting.")
@@ -60,8 +62,8 @@ def _fate(found: Search, pick: Pick) -> Phrase:
     return say(
         f"{reasons} {text}" if reasons else text,
         days=Amount(figures["interval"], "day", "time"),
-        dose=Amount(figures["salt_dose"], "g/L", "salt dose"),
-        salt=Amount(figures["salt_per_year"], "kg", "mass"),
+        dose=Amount(factor * figures["salt_dose"], "g/L", "salt dose"),
+        salt=Amount(factor * figures["salt_per_year"], "kg", "mass"),
         water=Amount(figures["water_per_year"], "L", "volume", "large volume"),
     )
 
@@ -91,7 +93,7 @@ def _rating(softener: Softener) -> Answer:
 
 def _picture(task: Task, softener: Softener) -> Picture:
     """Salt a year against the salt setting, for the bed chosen."""
-    found = task.search(softener.bed)
+    found, factor = task.search(softener.bed), task.salt_factor
     bars = []
     for index, dose in enumerate(found.doses):
         pick = Pick(0, 0, index)
@@ -100,9 +102,9 @@ def _picture(task: Task, softener: Softener) -> Picture:
             continue
         bars.append(
             Bar(
-                Amount(float(dose), "g/L", "salt dose"),
-                Amount(figures["salt_per_year"], "kg", "mass"),
-                _fate(found, pick),
+                Amount(factor * float(dose), "g/L", "salt dose"),
+                Amount(factor * figures["salt_per_year"], "kg", "mass"),
+                _fate(found, pick, factor),
                 not found.reasons(pick),
                 abs(float(dose) - softener.salt_dose) < 0.5,
             )

@@ -14,6 +14,7 @@ from __future__ import annotations
 
 import json
 import math
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
@@ -24,6 +25,8 @@ from core.errors import JobFileError
 FORMAT = "tapwright job"
 VERSION = 1
 SOURCES = ("measured", "report", "told", "assumed")  # where an entry comes from, the surest first
+DEEPEST = 40  # levels of lists and tables; a job file has four
+_BRACKETS = re.compile(r'"(?:[^"\\]|\\.)*"?|[\[\]{}]')  # whole texts, so that brackets in them do not count
 LARGEST_FILE = 2_000_000  # characters; a job of thousands of readings is far smaller
 
 
@@ -102,13 +105,24 @@ def _changed(mapping: Mapping[str, Any], key: str, value: Any) -> dict[str, Any]
     return kept if value is None else {**kept, key: value}
 
 
+def _depth(text: str) -> int:
+    """How deep lists and tables are nested; found without nesting, as deep JSON ends a browser's Python."""
+    depth = deepest = 0
+    for sign in _BRACKETS.findall(text):
+        depth += 1 if sign in "[{" else -1 if sign in "]}" else 0
+        deepest = max(deepest, depth)
+    return deepest
+
+
 def _parse(text: str) -> dict[str, Any]:
     if len(text) > LARGEST_FILE:
         raise JobFileError(f"The file holds {len(text):,} characters; a job file holds at most {LARGEST_FILE:,}.")
+    if _depth(text) > DEEPEST:
+        raise JobFileError("This is not a job file: its lists are nested deeper than any job file's.")
     try:
         document = json.loads(text)
-    except (json.JSONDecodeError, RecursionError) as error:
-        raise JobFileError(f"This is not a job file: it cannot be read as JSON ({error}).") from None
+    except (ValueError, RecursionError):  # also an integer of thousands of digits
+        raise JobFileError("This is not a job file: it cannot be read as JSON.") from None
     if not isinstance(document, dict) or document.get("format") != FORMAT:
         raise JobFileError(f"This is not a job file: its “format” is not “{FORMAT}”.")
     version = document.get("version")
@@ -143,7 +157,7 @@ def _read(document: dict[str, Any]) -> Job:
 def _text(value: Any, key: str) -> str:
     if not isinstance(value, str):
         raise JobFileError(f"“{key}” of the job file is not a text.")
-    return value
+    return value.encode("utf-8", "replace").decode("utf-8")  # half a surrogate pair cannot be drawn
 
 
 def _entry(key: str, part: Any) -> Entry:

@@ -33,7 +33,10 @@ def assess_run_out(softener: Softener) -> Part:
     task, ledger = softener.task, softener.ledger
     if task is None or ledger is None:
         return Part("run_out")
-    figures = {name: softener.part.answers[name].amount.value for name in ("capacity", "reserve")}
+    answers = softener.part.answers
+    if "capacity" not in answers or "reserve" not in answers:
+        return Part("run_out")
+    figures = {name: answers[name].amount.value for name in ("capacity", "reserve")}
     days = ledger.working.step(
         hard_days,
         load=task.load,
@@ -42,10 +45,10 @@ def assess_run_out(softener: Softener) -> Part:
         longest=task.longest,
         kind=task.kind,
     )
-    answers = [_days(days, ledger.working.leading_to(days))]
+    found = [_days(days, ledger.working.leading_to(days))]
     if task.kind != "twin":
-        answers += _reserves(softener, figures["capacity"])
-    return Part("run_out", {answer.key: answer for answer in answers})
+        found += _reserves(softener, figures["capacity"])
+    return Part("run_out", {answer.key: answer for answer in found})
 
 
 def _days(days: float, steps) -> Answer:

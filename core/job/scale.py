@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import isnan
+from math import isfinite
 
 from core.chemistry import Solution, precipitation_potential, scale_per_year, scale_potential, stability
 from core.chemistry.index_bands import SCALES
@@ -24,7 +24,8 @@ INDEX_NAMES = {
     "galvanised": "Ratio S1, galvanised steel",
     "copper": "Ratio S, copper in hot water",
 }
-DEAD_BAND = 0.3  # of the saturation index; common practice, no source
+DEAD_BAND = 0.5  # of the saturation index, as of the Langelier index; common practice, no source
+NO_SUCH_WATER = "No water has this pH together with this alkalinity and hardness: look at the three readings again."
 LITTLE_SCALE = 0.1  # kg a year, below which the heater is called safe; our choice
 
 
@@ -94,30 +95,33 @@ def _answers(ledger: Ledger, water: Solution, heater: float, demand: Demand) -> 
     cold_index, hot_index = (step(scale_water.calcite_index, solution=solution) for solution in (water, hot))
     answers = [
         *_scale_a_year(ledger, water, heater, demand, potential),
-        _index("hot", f"Saturation index at {heater:.0f} °C", hot_index, ledger),
+        _index("hot", "Saturation index in the heater", hot_index, ledger),
         _index("cold", "Saturation index at the tap", cold_index, ledger),
         Answer(
             "potential",
             "Lime that heating can throw out",
-            Amount(potential, "g/m³"),
-            say("As CaCO3 in each cubic metre of hot water; below zero it would dissolve lime instead."),
+            Amount(potential, "mg/L CaCO3"),
+            say("So many grams in each cubic metre of hot water; below zero it would dissolve lime instead."),
             ledger.working.leading_to(potential),
         ),
         *_indices(ledger, water),
     ]
-    return [answer for answer in answers if not isnan(answer.amount.value)]
+    found = [answer for answer in answers if isfinite(answer.amount.value)]
+    if not found:
+        ledger.problems["water.ph"] = Problem("water.ph", "error", NO_SUCH_WATER)
+    return found
 
 
 def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand, potential: float) -> list[Answer]:
-    if demand.volume is None:
+    if demand.total is None:
         ledger.take(demand.ledger)
         return []
-    ledger.take(demand.ledger, demand.volume)
+    ledger.take(demand.ledger, demand.total)
     share = ledger.read("scale.hot_share")
     if share is None:
         return []
     step = ledger.working.step
-    volume = step(hot_water_volume, volume=demand.volume, hot_share=share)
+    volume = step(hot_water_volume, volume=demand.total, hot_share=share)
     lime = step(scale_water.thrown_out, potential=potential)
     year = step(scale_per_year, potential=lime, volume=volume)
     band = scale_potential(water, heater)
@@ -127,8 +131,8 @@ def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand
         words, tone = say("Next to no lime falls out in the heater at {heater}.", heater=degrees), "good"
     else:
         words = say(
-            "Up to this much lime a year can fall out in the heater at {heater}: between {low} and {high}, by the "
-            "constants used and the form it takes.",
+            "About this much lime a year can fall out in the heater at {heater}: {low} to {high}, by the constants "
+            "used and the form it takes. An upper bound: growth is slow.",
             heater=degrees,
             low=Amount(low, "kg", "mass"),
             high=Amount(high, "kg", "mass"),
@@ -137,7 +141,7 @@ def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand
     return [
         Answer(
             "scale_year",
-            "Lime in the heater a year, at most",
+            "Lime in the heater a year",
             Amount(year, "kg", "mass"),
             words,
             ledger.working.leading_to(year),
@@ -168,7 +172,7 @@ def _indices(ledger: Ledger, water: Solution) -> list[Answer]:
         band = scale.band(float(value))
         if band is None:
             continue
-        words = say(f"{band.words.capitalize()}. Made for {scale.made_for}; it does not measure corrosion.")
+        words = say(f"{band.words.capitalize()}. Made for {scale.made_for}; an index, not a measurement.")
         answers.append(
             Answer(
                 name.replace(" ", "_"), label, Amount(float(value), ""), words, ledger.working.leading_to(value, water)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from math import isnan
 
-from core.job.answers import Amount, Answer, Assumption, Mark, Part, Problem, say
+from core.job.answers import Amount, Answer, Assumption, Mark, Missing, Part, Problem, say
 from core.job.blend import sodium_answers
 from core.job.cautions import softener_cautions
 from core.job.demand import Demand
@@ -25,6 +25,9 @@ from core.treatment import resin, softener, vessel
 from core.treatment.search import Pick, Search, counter_current_capacity
 from core.treatment.vessel import Bed
 from core.working import Step
+
+SALT_NAMES = {"nacl": "Common salt", "kcl": "Potassium chloride"}
+FAR_TOO_LONG = 3.0  # times the longest interval, from which a bed is called far too large; our choice
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,7 +55,7 @@ def assess_softener(job: Job, demand: Demand) -> Softener:
     search, pick, bed, entered = found
     dose = _dose(ledger, task, search, pick, bed)
     answers = [
-        _headline(ledger, search, pick, bed, dose, entered),
+        _headline(ledger, task, search, pick, bed, dose, entered),
         *_capacity_answers(ledger, task, search, pick, bed, dose),
     ]
     part = ledger.part("softener", [a for a in answers if not isnan(a.amount.value)], cautions)
@@ -65,6 +68,9 @@ def _task(ledger: Ledger, demand: Demand) -> Task | None:
     target, temperature = ledger.read("blend.target"), ledger.read("water.temperature")
     shortest, longest = _intervals(ledger)
     salt_dose, dose_entered = ledger.read("softener.salt_dose"), "softener.salt_dose" in ledger.job.entries
+    salt = ledger.choice("softener.salt")
+    if salt == "kcl" and salt_dose is not None:
+        salt_dose = ledger.working.step(resin.common_salt_dose, potassium_chloride=salt_dose)
     why_not = "" if salt_dose is None else resin.why_no_capacity(salt_dose)
     if why_not:
         ledger.problems["softener.salt_dose"] = Problem("softener.salt_dose", "error", why_not)
@@ -76,12 +82,23 @@ def _task(ledger: Ledger, demand: Demand) -> Task | None:
     removed = {"target": target} if blended else {}
     load = step(softener.daily_load, volume=demand.volume, hardness=hardness, **removed)
     if not load > 0.0:
-        ledger.problems["water.hardness"] = Problem(
-            "water.hardness", "warning", "There is no hardness to remove here: no softener is needed for it."
-        )
+        ledger.missing["softener.load"] = Missing("softener.load", _why_no_load(hardness, demand.volume, target))
+        return None
+    if shortest > longest:
+        text = "The shortest interval is longer than the longest: no softener can keep both."
+        ledger.problems["softener.shortest"] = Problem("softener.shortest", "error", text)
+        ledger.missing["softener.shortest"] = Missing("softener.shortest", text)
         return None
     kind = ledger.choice("softener.kind")
-    return Task(load, hardness, demand.peak, temperature, kind, shortest, longest, salt_dose)
+    return Task(load, hardness, demand.peak, temperature, kind, shortest, longest, salt_dose, salt)
+
+
+def _why_no_load(hardness: float, volume: float, target: float | None) -> str:
+    if not volume > 0.0:
+        return "No water is softened here: enter persons or a metered use above zero."
+    if target is not None and hardness > 0.0:
+        return "The hardness wanted at the taps is not below that of the raw water: nothing is left to remove."
+    return "There is no hardness to remove here: no softener is needed for it."
 
 
 def _counted_hardness(ledger: Ledger) -> float | None:
@@ -141,13 +158,20 @@ def _dose(ledger: Ledger, task: Task, search: Search, pick: Pick, bed: Bed) -> f
     return ledger.working.add(Step(recommended_dose.card, recommended_dose, inputs, dose))
 
 
-def _headline(ledger: Ledger, search: Search, pick: Pick, bed: Bed, dose: float, entered: bool) -> Answer:
+def _headline(ledger: Ledger, task: Task, search: Search, pick: Pick, bed: Bed, dose: float, entered: bool) -> Answer:
     amount = Amount(bed.resin_volume, "L", "volume", "resin")
     days = Amount(float(search.interval[pick]), "day", "time")
-    salt = Amount(dose, "g/L", "salt dose")
+    salt = Amount(dose * task.salt_factor, "g/L", "salt dose")
     reasons = " ".join(search.reasons(pick))
     if reasons:
         words, tone = say(f"This bed falls short. {reasons}"), "bad"
+    elif entered and float(search.interval_full[pick]) > FAR_TOO_LONG * search.limits.longest:
+        words = say(
+            "Far more resin than this load needs: the calendar regenerates it every {days} long before it is used up, "
+            "and most of the salt is wasted.",
+            days=days,
+        )
+        tone = "watch"
     elif entered:
         words, tone = say("Will do: at {dose} of salt it regenerates every {days}.", dose=salt, days=days), "good"
     else:
@@ -176,18 +200,21 @@ def _capacity_answers(ledger: Ledger, task: Task, search: Search, pick: Pick, be
     else:
         per_litre = w.step(resin.trade_capacity, salt_dose=dose)
     capacity = w.step(softener.bed_capacity, resin_volume=bed.resin_volume, capacity=per_litre)
-    salt = w.step(softener.salt_per_regeneration, resin_volume=bed.resin_volume, salt_dose=dose)
+    used = w.step(resin.potassium_chloride_dose, salt_dose=dose) if task.salt == "kcl" else dose
+    salt = w.step(softener.salt_per_regeneration, resin_volume=bed.resin_volume, salt_dose=used)
     reserve = _reserve(ledger, task, capacity)
     usable = w.step(softener.usable_capacity, capacity=capacity, reserve=reserve)
     interval = w.step(softener.days_between, usable=usable, load=task.load, longest=task.longest)
     meter = w.step(softener.meter_setting, usable=usable, hardness=task.hardness)
     raw, target = ledger.read("water.hardness"), ledger.read("blend.target")
+    if target is None and "blend.softened" in ledger.job.entries:
+        target = ledger.read("blend.softened")
     return [
         Answer(
             "salt",
             "Salt per regeneration",
             Amount(salt, "kg", "mass"),
-            say("Salt setting {dose} of resin.", dose=Amount(dose, "g/L", "salt dose")),
+            say(f"{SALT_NAMES[task.salt]}, {{dose}} of resin.", dose=Amount(used, "g/L", "salt dose")),
             w.leading_to(salt),
         ),
         _interval(ledger, task, search, pick, interval),
@@ -195,7 +222,7 @@ def _capacity_answers(ledger: Ledger, task: Task, search: Search, pick: Pick, be
             "hardness",
             "Hardness to set",
             Amount(task.hardness, "mmol/L", "hardness"),
-            say("For the valve head: iron and manganese are counted in."),
+            say(_counted_words(ledger)),
             w.leading_to(task.hardness),
         ),
         Answer(
@@ -222,6 +249,12 @@ def _capacity_answers(ledger: Ledger, task: Task, search: Search, pick: Pick, be
         *running_answers(ledger, task, bed, salt, interval),
         *([] if raw is None else sodium_answers(ledger, raw, target)),
     ]
+
+
+def _counted_words(ledger: Ledger) -> str:
+    if ledger.read("water.iron") or ledger.read("water.manganese"):
+        return "For the valve head: iron and manganese are counted in."
+    return "For the valve head: the hardness of the water; no iron or manganese is counted."
 
 
 def _reserve(ledger: Ledger, task: Task, capacity: float) -> float:

@@ -7,8 +7,9 @@ they search again and give the same.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import nan
+from math import isnan, nan
 
+from core.constants import MOLAR_MASS_KCL, MOLAR_MASS_NACL
 from core.treatment.rules import rules_for
 from core.treatment.search import ARRANGEMENTS, DOSES, Arrangement, Demand, Limits, Pick, Search, search
 from core.treatment.vessel import Bed
@@ -43,7 +44,13 @@ class Task:
     kind: str  # a key of KINDS
     shortest: float  # days
     longest: float  # days
-    salt_dose: float | None = None  # g/L; None where the search may choose
+    salt_dose: float | None = None  # g/L of common salt; None where the search may choose
+    salt: str = "nacl"  # "nacl" or "kcl": what it is regenerated with
+
+    @property
+    def salt_factor(self) -> float:
+        """Mass of the salt used for each kilogram of common salt."""
+        return MOLAR_MASS_KCL / MOLAR_MASS_NACL if self.salt == "kcl" else 1.0
 
     @property
     def arrangement(self) -> Arrangement:
@@ -155,5 +162,9 @@ def rule_note(topic: str, region: str) -> str:
 
 
 def pick_of(found: Search) -> Pick:
-    """What a search recommends; the last candidate where none will do."""
-    return found.best or Pick(len(found.arrangements) - 1, len(found.beds) - 1, len(found.doses) - 1)
+    """What a search recommends; where none will do, the largest bed at the highest dose whose capacity is known."""
+    if found.best is not None:
+        return found.best
+    bed = len(found.beds) - 1
+    known = [dose for dose in range(len(found.doses)) if not isnan(found.capacity[0, bed, dose])]
+    return Pick(0, bed, known[-1] if known else len(found.doses) - 1)

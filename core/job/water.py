@@ -33,7 +33,7 @@ def _hardness(ledger: Ledger, hardness: float, unit: str) -> Answer:
     if grains > SCALE_LIKELY:
         effect, tone = "Lime is likely to build up where it is heated: softening or blending pays.", "watch"
     elif grains < CORROSION_LIKELY:
-        effect, tone = "Little buffering: look at what it does to pipes before softening any further.", "plain"
+        effect, tone = "Look at what it does to pipes before softening any further.", "plain"
     else:
         effect, tone = "Treatment is a matter of taste and of the heater.", "plain"
     marks = tuple(

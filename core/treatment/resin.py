@@ -6,7 +6,7 @@ trade_capacity(salt_dose [g/L], table=None) -> eq/L       NaN outside the table
 why_no_capacity(salt_dose, table=None) -> str             "" where the table answers
 salt_efficiency(capacity [eq/L], salt_dose [g/L]) -> mol/kg
 share_of_stoichiometric(efficiency [mol/kg], salt="NaCl") -> share
-potassium_chloride_dose(salt_dose [g/L]) -> g/L
+potassium_chloride_dose(salt_dose [g/L]) -> g/L;  common_salt_dose(potassium_chloride [g/L]) -> g/L
 practice_capacity(ceiling [eq/L], factor=0.75) -> eq/L    from the equilibrium model to what beds do
 STOICHIOMETRIC_EFFICIENCY                                 {"NaCl": 8.556, "KCl": 6.707} mol/kg
 """
@@ -166,6 +166,20 @@ def share_of_stoichiometric(efficiency: Number, salt: str = "NaCl") -> Number:
 def potassium_chloride_dose(salt_dose: Number) -> Number:
     """Dose of potassium chloride that carries as many equivalents as a dose of common salt. [g/L]"""
     return salt_dose * (MOLAR_MASS_KCL / MOLAR_MASS_NACL)
+
+
+@formula(
+    "Common salt that does the same",
+    "common salt = potassium chloride × 58.44 ÷ 74.55",
+    unit="g/L",
+    takes={"potassium_chloride": "g/L"},
+    source="IUPAC21",
+    validity="By equivalents; in practice potassium chloride does 10 to 30 % less.",
+)
+@broadcasts
+def common_salt_dose(potassium_chloride: Number) -> Number:
+    """Dose of common salt that regenerates as much as this dose of potassium chloride. [g/L]"""
+    return potassium_chloride * (MOLAR_MASS_NACL / MOLAR_MASS_KCL)
 
 
 @formula(

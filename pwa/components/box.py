@@ -22,6 +22,7 @@ def Box(
     lines: int = 1,
     grows: bool = True,
     expand: bool = False,
+    locked: bool = False,
 ) -> ft.Control:
     """A field that shows `value` and calls `change` with the new text; `number` asks for the decimal keypad.
 
@@ -36,6 +37,7 @@ def Box(
         content=ft.TextField(
             label=label,
             value=value,
+            read_only=locked,
             hint_text=hint or None,
             keyboard_type=ft.KeyboardType.PHONE if number else ft.KeyboardType.TEXT,
             autocorrect=not number,

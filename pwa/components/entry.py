@@ -84,6 +84,7 @@ def _box(field: Field, state: FieldState, sheet: Sheet, display: Display) -> ft.
         error=state.refused or (state.remark if state.level == "error" else ""),
         size=theme.TITLE * display.text_scale,
         expand=True,
+        locked=sheet.locked,
     )
 
 

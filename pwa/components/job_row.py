@@ -10,6 +10,8 @@ from pwa import theme
 from pwa.components.words import Tappable
 from pwa.services.storage import JobRow
 
+SHORT: dict[str, Any] = {"max_lines": 2, "overflow": ft.TextOverflow.ELLIPSIS}
+
 
 def JobCard(row: JobRow, workspace: Any, key: str) -> ft.Control:
     """A job to tap on, with a menu for the rest."""
@@ -23,9 +25,9 @@ def JobCard(row: JobRow, workspace: Any, key: str) -> ft.Control:
     def open_(event: ft.ControlEvent) -> None:
         ft.context.page.navigate(f"/job/{row.id}")
 
-    words: list[ft.Control] = [ft.Text(named(row.name), theme_style=ft.TextThemeStyle.TITLE_MEDIUM)]
+    words: list[ft.Control] = [ft.Text(named(row.name), theme_style=ft.TextThemeStyle.TITLE_MEDIUM, **SHORT)]
     if row.place:
-        words.append(ft.Text(row.place, color=ft.Colors.ON_SURFACE_VARIANT))
+        words.append(ft.Text(row.place, color=ft.Colors.ON_SURFACE_VARIANT, **SHORT))
     if row.summary:
         words.append(ft.Text(row.summary))
     menu = ft.PopupMenuButton(

@@ -80,7 +80,9 @@ def Jobs(jobs: JobList, workspace: Workspace) -> ft.Control:
     """The jobs, with a search once there are many, and the ways to begin one."""
 
     async def begin() -> None:
-        ft.context.page.navigate(f"/job/{await workspace.new()}/water")
+        job_id = await workspace.new()
+        if job_id:
+            ft.context.page.navigate(f"/job/{job_id}/water")
 
     async def open_file() -> None:
         job_id = await workspace.open_file()
@@ -117,7 +119,9 @@ def Samples(workspace: Workspace) -> ft.Control:
 
     def loader(name: str) -> Callable[[Any], Awaitable[None]]:
         async def load(event: Any) -> None:
-            ft.context.page.navigate(f"/job/{await workspace.add_copy(load_sample(name))}")
+            job_id = await workspace.add_copy(load_sample(name))
+            if job_id:
+                ft.context.page.navigate(f"/job/{job_id}")
 
         return load
 

@@ -7,6 +7,7 @@ import flet as ft
 from core.job.fields import CHOICES, FIELDS, FURTHER_PARTS, PART_TITLES, SECTIONS
 from pwa import theme
 from pwa.components.answer import AnswerStrip
+from pwa.components.banner import Banners
 from pwa.components.entry import ChoiceField, EntryField
 from pwa.components.guard import guarded
 from pwa.components.how_sure import HowSure
@@ -36,6 +37,7 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
         spacing=0,
         horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
+            *([Banners(workspace.standing, workspace)] if sheet.locked else []),
             AnswerStrip(sheet.parts[section], SECTIONS[section], shown),
             ft.ListView(
                 expand=True,

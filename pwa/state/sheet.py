@@ -28,6 +28,7 @@ from core.job.fields import (
 )
 from core.job.kits import HowRead, Kit
 from core.job.record import Entry, Job
+from core.job.signoff_fields import SECTION as SIGNOFF
 from core.job.source_fields import MOST, parameters_of, source_numbers
 from pwa.state.sureness import SureState
 from pwa.text import parse_quantity
@@ -129,6 +130,14 @@ class Findings:
 
 @ft.observable
 @dataclass
+class Turn:
+    """Changes each time something is to be looked at anew."""
+
+    turn: int = 0
+
+
+@ft.observable
+@dataclass
 class Heading:
     """Name and place of the job."""
 
@@ -149,8 +158,10 @@ class Sheet:
         self.heading = Heading(job.name, job.place, job.notes)
         further = (part for parts in FURTHER_PARTS.values() for part in parts)
         self.parts = {key: PartState(key) for key in (*SECTIONS, *further)}
+        self.signoff = Turn()
         self.findings = Findings()
         self.sure = {key: SureState(key) for key in SECTIONS}
+        self.locked = False  # while another tab does the saving
         self.own_kits: tuple[Kit, ...] = ()
         self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed
         self.fields = _Made(self._field, FIELDS)
@@ -301,9 +312,14 @@ class Sheet:
                 state.unit = unit
 
     def _put(self, job: Job, section: str) -> None:
+        if self.locked:
+            return  # another tab does the saving: nothing is taken that could not be kept
         self.job = job
         self.layout.follow(job)
-        self._changed(self, section)
+        self._changed(self, section if section in self.parts else "")
+        if section == SIGNOFF:
+            self.signoff.turn += 1
+            self.say_doubts(SIGNOFF)
 
     def _field(self, key: str) -> FieldState:
         entry = self.job.entries.get(key)

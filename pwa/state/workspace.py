@@ -17,7 +17,7 @@ import flet as ft
 
 from core.errors import TapwrightError
 from core.job import kits
-from core.job.answers import Phrase
+from core.job.answers import Missing, Part, Phrase
 from core.job.fields import FURTHER_PARTS, ON_DEMAND, field_for
 from core.job.kits import Kit
 from core.job.record import Entry, Job
@@ -25,7 +25,7 @@ from pwa.services.autosave import Autosave
 from pwa.services.files import Files, FilesError
 from pwa.services.handover import HandoverError, arrival, file_of, read_file
 from pwa.services.host import Host
-from pwa.services.storage import JobRow, Storage, StorageError, UnknownJobError
+from pwa.services.storage import JobRow, ReadOnlyError, Storage, StorageError, UnknownJobError
 from pwa.state.display import Display
 from pwa.state.settings import Settings
 from pwa.state.sheet import Sheet
@@ -103,16 +103,23 @@ class Workspace:
         self._check: Callable[..., Any] | None = None
         self._resting: dict[str, asyncio.Task[None]] = {}
         self._spreading = Spreading()
+        self._ready = asyncio.Event()  # the storage has been opened, or cannot be
 
     # Opening
 
     async def open(self) -> None:
         """Read what is kept, then bring in the calculator."""
         try:
-            self.storage = await self._open_storage()
+            await self._read_kept()
         except StorageError as error:
             self.standing.trouble = str(error)
             return
+        finally:
+            self._ready.set()
+        await self._bring_in_calculator()
+
+    async def _read_kept(self) -> None:
+        self.storage = await self._open_storage()
         self._autosave = Autosave(self.storage, on_trouble=self._trouble)
         self.storage.on_writable(self._writable)
         self.standing.read_only = not self.storage.can_write
@@ -120,7 +127,6 @@ class Workspace:
         self.preferences.settings = Settings.from_text(await self.storage.get_setting("settings"))
         await self._read_own_kits()
         await self.list_again()
-        await self._bring_in_calculator()
 
     async def _read_own_kits(self) -> None:
         try:
@@ -181,13 +187,13 @@ class Workspace:
         rows = await self.storage.list_jobs(self.jobs.search, limit=PAGE, offset=len(self.jobs.rows))
         self.jobs.rows += tuple(rows)
 
-    async def new(self) -> str:
-        """Begin an empty job; gives its id."""
+    async def new(self) -> str | None:
+        """Begin an empty job; gives its id, None where nothing may be written here."""
         region = self.preferences.settings.region
         job = Job(id=_new_id())
         return await self._add(job.with_choice("softener.region", region) if region else job)
 
-    async def add_copy(self, job: Job) -> str:
+    async def add_copy(self, job: Job) -> str | None:
         """Put a job (a sample, an opened file) on the list under an id of its own."""
         return await self._add(replace(job, id=_new_id()))
 
@@ -236,6 +242,7 @@ class Workspace:
 
     async def sheet(self, job_id: str) -> Sheet | None:
         """The open sheet of a job, read from storage the first time; None where there is no such job."""
+        await self._ready.wait()
         if job_id not in self.sheets:
             try:
                 job = Job.from_text((await self.storage.load(job_id)).document)
@@ -247,6 +254,7 @@ class Workspace:
 
     def _open_sheet(self, job: Job) -> Sheet:
         sheet = Sheet(job, self._changed, self._units)
+        sheet.locked = self.standing.read_only
         sheet.own_kits, sheet.doubt_of = self.preferences.own_kits, self._doubt_of
         self._assess_sheet(sheet, sheet.layout.sections)
         self._check_sheet(sheet)
@@ -305,7 +313,7 @@ class Workspace:
         if self._assess is None:
             return
         assessment = self._assess(sheet.job)
-        sheet.take({section: getattr(assessment, section) for section in sections})
+        sheet.take({section: _part_of(assessment, section) for section in sections})
         for section in sections:
             sheet.say_doubts(section)
 
@@ -352,7 +360,11 @@ class Workspace:
         own = {**own_units(settings.own_units), **({"hardness": hardness_unit} if hardness_unit else {})}
         return UNIT_SETS[unit_set_for(settings.unit_set, hardness_unit)] | own
 
-    async def _add(self, job: Job) -> str:
+    async def _add(self, job: Job) -> str | None:
+        if not self.storage.can_write:
+            self.notice.say(str(ReadOnlyError()))
+            return None
+        await self.host.persist_storage()
         sheet = self._open_sheet(job)
         try:
             await self.storage.save(job.id, job.to_text(), job.name, job.place, self.summary(sheet))
@@ -465,6 +477,8 @@ class Workspace:
             self.notice.say(f"{error} {why_not_a_job}")
             return
         self.notice.say(report.sentence())
+        self.sheets.clear()  # what is open may have come in anew
+        self.jobs.turn += 1
         await self.list_again()
 
     def _trouble(self, sentence: str) -> None:
@@ -473,3 +487,13 @@ class Workspace:
 
 def _new_id() -> str:
     return uuid.uuid4().hex
+
+
+def _part_of(assessment: Any, name: str) -> Part:
+    """A part of an assessment; where it fails, one that says so, so that the others go on."""
+    try:
+        return getattr(assessment, name)
+    except Exception:
+        log.exception("%s failed", name)
+        text = "This part could not be worked out; your entries are kept. Look at what was entered last."
+        return Part(name, missing=(Missing("", text),))

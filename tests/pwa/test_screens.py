@@ -237,3 +237,49 @@ def test_settings_are_kept_for_the_next_start():
         assert (again.preferences.settings.decimal, again.preferences.settings.ground) == (",", "dark")
 
     run(story())
+
+
+def test_reloading_inside_a_job_shows_the_job():
+    """A start at the address of a section waits for the storage and then shows it."""
+
+    async def story() -> None:
+        app = await opened()
+        job_id = await app.workspace.new()
+        again = Workspace(lambda: asyncio.sleep(0.05, app.storage), app.files, NativeHost())
+        page = FakePage()
+        page.session.apply_page_patch({"route": f"/job/{job_id}/water"})
+        page.show_views(App, again, again.preferences, again.notice)
+        await page.settle(0.6)
+        assert page.reads("Total hardness")
+
+    run(story())
+
+
+def test_where_another_tab_writes_nothing_is_taken_that_would_be_lost():
+    """No job is begun, and what is typed into an open one is not taken."""
+
+    async def story() -> None:
+        app = await opened()
+        job_id = await app.workspace.new()
+        app.storage.keeper.can_write = False
+        app.workspace.standing.read_only = True
+        app.workspace.sheets.clear()
+        assert await app.workspace.new() is None
+        sheet = await app.workspace.sheet(job_id)
+        sheet.type("water.hardness", "22")
+        assert sheet.job.entries == {}
+
+    run(story())
+
+
+def test_a_part_that_cannot_be_worked_out_says_so(monkeypatch):
+    """An error in one part of the assessment leaves the others standing."""
+
+    async def story() -> None:
+        app = await opened()
+        monkeypatch.setattr("core.job.assessment.assess_blend", lambda job: 1 / 0)
+        sheet = await app.workspace.sheet(await app.workspace.new())
+        assert "could not be worked out" in sheet.parts["blend"].part.missing[0].text
+        assert sheet.parts["water"].part.missing
+
+    run(story())

@@ -146,4 +146,53 @@ def test_water_without_hardness_needs_no_softener():
     softener = assess(job(water__hardness=Entry(0.0, "gpg", "measured"), water__iron=None)).softener
 
     assert not softener.answers
-    assert any("no hardness" in problem.text for problem in softener.problems)
+    assert any("no hardness" in missing.text for missing in softener.missing)
+
+
+def test_potassium_chloride_needs_more_by_its_molar_mass():
+    """The same bed and setting: 74.55 ÷ 58.44 of the mass, and potassium instead of sodium."""
+    with_salt, with_potassium = job(), job().with_choice("softener.salt", "kcl")
+    common, potassium = assess(with_salt).softener, assess(with_potassium).softener
+
+    assert value(potassium, "salt_year") == pytest.approx(value(common, "salt_year") * 74.5483 / 58.43976928)
+    assert "potassium" in potassium.answers
+
+
+def test_water_that_is_not_softened_is_heated_too():
+    """The share that is softened does not change what the heater gets of the raw water."""
+    water = {"water__ph": Entry(7.3, "", "measured"), "water__alkalinity": Entry(5.0, "meq/L", "measured")}
+    whole, half = (
+        assess(job(**water, demand__softened_share=Entry(share, "%", "told"))).scale for share in (100.0, 50.0)
+    )
+
+    assert value(whole, "scale_year") == value(half, "scale_year")
+
+
+@pytest.mark.parametrize("ph", [0.0, 1.0, 13.0, 14.0])
+def test_a_water_that_cannot_be_says_so(ph):
+    """pH and alkalinity that contradict each other: a sentence, not an empty card."""
+    entries = {"water__ph": Entry(ph, "", "measured"), "water__alkalinity": Entry(5.0, "meq/L", "measured")}
+    scale = assess(job(**entries)).scale
+
+    assert scale.answers or scale.problems
+
+
+@pytest.mark.parametrize("kind", ["single", "twin", "counter-current"])
+@pytest.mark.parametrize("litres", [2.0, 10.0, 30.0, 5000.0])
+def test_any_bed_of_any_kind_is_answered(kind, litres):
+    """Also one far too small or far too large: every part answers or says why not."""
+    assessment = assess(job(softener__resin=Entry(litres, "L", "told")).with_choice("softener.kind", kind))
+
+    assert assessment.softener.answers
+    assert assessment.softener.headline.tone in ("good", "bad", "watch")
+    assert assessment.options.answers
+    assert assessment.run_out.key == "run_out"
+
+
+def test_intervals_that_exclude_each_other_are_said():
+    """Shortest above longest: a sentence."""
+    softener = assess(
+        job(softener__shortest=Entry(10.0, "day", "told"), softener__longest=Entry(2.0, "day", "told"))
+    ).softener
+
+    assert any("longer than the longest" in problem.text for problem in softener.problems)

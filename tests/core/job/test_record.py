@@ -77,7 +77,8 @@ REFUSED = [  # what is wrong, the file, words the sentence must hold
         json.dumps({"format": FORMAT, "version": 1, "entries": {"a": {"source": "dreamt"}}}),
         "dreamt",
     ),
-    ("deep nesting", "[" * 100_000, "JSON"),
+    ("deep nesting", "[" * 100_000, "nested"),
+    ("a huge integer alone", "9" * 5000, "JSON"),
 ]
 
 

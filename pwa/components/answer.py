@@ -17,6 +17,7 @@ from pwa.state.sheet import PartState
 LINE = 26.0
 TRACK = 4.0
 BAND = 12.0
+BRIEF_FROM = 2.0  # text scale from which the strip leaves its line out: entries must stay in sight
 APART = 1.1  # of the line's 2, between ticks whose names share a line
 
 
@@ -118,7 +119,7 @@ def _spoken(answer: Answer, display: Display) -> str:
         low, high = (
             display.show(type(answer.amount)(end, answer.amount.unit, answer.amount.quantity)) for end in answer.band
         )
-        parts.append(f"8 cases of 10 between {low} and {high}")
+        parts.append(f"between {low} and {high}")
     parts += [f"{mark.name} {display.show(mark.at)}" for mark in answer.marks]
     return ", ".join(parts)
 
@@ -137,12 +138,13 @@ def Figure(answer: Answer, display: Display) -> ft.Control:
     )
 
 
-def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Control:
-    """A part's headline: figure, words, line; or what is missing for it."""
+def AnswerBlock(part: Part, display: Display, *, brief: bool = False) -> ft.Control:
+    """A part's headline: figure, words, line; or what is missing for it. `brief` leaves room for entries below."""
     headline = part.headline
     lacks = [ToneLine("missing", missing.text) for missing in part.missing]
     if headline is None:
-        return ft.Column(spacing=4, controls=lacks or [ToneLine("missing", "Nothing to answer yet.")])
+        lacks += [ToneLine("bad", problem.text) for problem in part.problems if problem.level == "error"]
+        return ft.Column(spacing=4, controls=lacks[:1] if brief else lacks or [ToneLine("missing", "No answer yet.")])
     words = display.say(headline.words)
     tone = TONES[headline.tone]
     controls: list[ft.Control] = [
@@ -151,9 +153,14 @@ def AnswerBlock(part: Part, display: Display, *, line: bool = True) -> ft.Contro
             vertical_alignment=ft.CrossAxisAlignment.CENTER,
             controls=[Figure(headline, display), *([_badge(headline.tone)] if tone.word else [])],
         ),
-        ft.Text(words, theme_style=ft.TextThemeStyle.BODY_LARGE),
+        ft.Text(
+            words,
+            theme_style=ft.TextThemeStyle.BODY_LARGE,
+            max_lines=2 if brief else None,
+            overflow=ft.TextOverflow.ELLIPSIS if brief else ft.TextOverflow.CLIP,
+        ),
     ]
-    if line:  # its room is kept, so that nothing moves under the thumb when the band arrives
+    if not brief:  # its room is kept, so that nothing moves under the thumb when the band arrives
         controls.append(AnswerLine(headline, display) or ft.Container(height=LINE))
     return ft.Column(spacing=2, controls=[*controls, *lacks])
 
@@ -179,7 +186,11 @@ def _badge(name: str) -> ft.Control:
 def AnswerStrip(state: PartState, title: str, shown: Callable[[], Display]) -> ft.Control:
     """The strip that stays in sight while entries change: the section's headline; `shown` says in which units."""
     part, display = state.part, shown()
-    content = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display)
+    content = (
+        ft.Text("Getting the calculator ready …")
+        if part is None
+        else AnswerBlock(part, display, brief=display.text_scale >= BRIEF_FROM)
+    )
     return ft.Container(
         bgcolor=ft.Colors.SURFACE_CONTAINER_LOWEST,
         padding=ft.Padding.symmetric(horizontal=theme.PAD, vertical=theme.GAP),

@@ -169,7 +169,7 @@ def _index(ledger: Ledger, key: str, label: str, value: float) -> Answer:
         words, tone = "Near balance.", "good"
     marks = (Mark("balance", Amount(0.0, "")),)
     steps = ledger.working.leading_to(value)
-    return Answer(key, label, Amount(round(value, 2), ""), say(words), steps, marks, tone=tone)
+    return Answer(key, label, Amount(round(value, 2) + 0.0, ""), say(words), steps, marks, tone=tone)
 
 
 def _ratios(ledger: Ledger) -> list[Answer]:

@@ -117,7 +117,13 @@ def _saturation(ledger: Ledger, dosing: Dosing, asked: Asked) -> Answer:
     marks = (Mark("balance", Amount(0.0, "")),)
     label = "Saturation index after treatment"
     return Answer(
-        "saturation", label, Amount(value, ""), say(words), ledger.working.leading_to(value), marks, tone=tone
+        "saturation",
+        label,
+        Amount(round(value, 2) + 0.0, ""),
+        say(words),
+        ledger.working.leading_to(value),
+        marks,
+        tone=tone,
     )
 
 

@@ -131,8 +131,8 @@ def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand
         words, tone = say("Next to no lime falls out in the heater at {heater}.", heater=degrees), "good"
     else:
         words = say(
-            "About this much lime a year can fall out in the heater at {heater}: {low} to {high}, by the constants "
-            "used and the form it takes. An upper bound: growth is slow.",
+            "So much lime can fall out in the heater at {heater}: {low} to {high}, by the constants and its form; an "
+            "upper bound.",
             heater=degrees,
             low=Amount(low, "kg", "mass"),
             high=Amount(high, "kg", "mass"),

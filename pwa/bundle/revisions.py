@@ -67,14 +67,14 @@ class Sizes:
 
 
 def sizes(site: Path, *, without: tuple[str, ...] = ()) -> Sizes:
-    """The sizes for Chromium, leaving out paths that begin with one of `without`."""
+    """The sizes for Chromium over https, leaving out paths that begin with one of `without`."""
     kept = fetched = 0
     for place in kept_files(site):
         other_engine = place.startswith("canvaskit/") and not place.startswith("canvaskit/chromium/")
         if other_engine or place.startswith(without):
             continue
         path = site / place
-        smaller = path.with_name(f"{path.name}.gz")
+        copies = (path.with_name(f"{path.name}.{ending}") for ending in ("br", "gz"))
         kept += path.stat().st_size
-        fetched += (smaller if smaller.exists() else path).stat().st_size
+        fetched += min(copy.stat().st_size for copy in (path, *copies) if copy.exists())
     return Sizes(kept, fetched)

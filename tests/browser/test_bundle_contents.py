@@ -54,8 +54,8 @@ def test_site_without_node_holds_sources(plain_site):
 def test_sizes_stay_within_budget(site):
     """What a phone stores without the image, and fetches up to the first screen with and without it, is bounded."""
     assert sizes(site, without=(SNAPSHOT,)).kept <= 45 * MB
-    assert sizes(site, without=LATER).fetched <= 21.5 * MB
-    assert sizes(site, without=(*LATER, SNAPSHOT)).fetched <= 13.5 * MB
+    assert sizes(site, without=LATER).fetched <= 21 * MB
+    assert sizes(site, without=(*LATER, SNAPSHOT)).fetched <= 13 * MB
 
 
 def test_service_worker_lists_every_file_with_its_hash(site):

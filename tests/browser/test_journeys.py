@@ -115,7 +115,7 @@ def test_working_is_one_tap_away(site, serve, visit):
 
 
 def test_a_sample_opens_as_a_job(site, serve, visit):
-    """An example gives a whole sheet of answers at once."""
+    """An example gives a whole sheet of answers at once, also after a reload."""
     server = serve(site)
     seen = visit()
     seen.open(server.url, "Hardness reading")
@@ -125,6 +125,7 @@ def test_a_sample_opens_as_a_job(site, serve, visit):
     seen.wait_for("lime can fall out")
 
     seen.screenshot("journey-sample")
+    seen.reload("Set the valve until 8.0")
 
 
 def test_offline_closed_and_reopened_the_job_is_as_it_was(site, playwright, tmp_path):

@@ -7,6 +7,7 @@
 /job/ID/paste      a report pasted, on its way into the job
 /job/ID/share      the ways to hand a job over
 /job/ID/sheet      the customer's sheet as a PDF
+/job/ID/signoff    what was read after commissioning, against what was promised
 /job/ID/sources/3  one of its sources
 /join/PART         a job on its way in, by a link or a code
 """
@@ -22,6 +23,7 @@ from pwa.screens.job import JobView, SectionView, SourceView
 from pwa.screens.jobs import JobsView
 from pwa.screens.paste import PasteView
 from pwa.screens.settings import SettingsView
+from pwa.screens.signoff import SignOffView
 from pwa.state.settings import Settings
 from pwa.state.workspace import Notice, Preferences, Workspace
 
@@ -63,11 +65,12 @@ def _routes(workspace: Workspace) -> list[ft.Route]:
     )
     paste = ft.Route(path="paste", component=lambda: PasteView(workspace))
     share = ft.Route(path="share", component=lambda: ShareView(workspace, standing))
+    signed = ft.Route(path="signoff", component=lambda: SignOffView(workspace, standing, preferences))
     leave = ft.Route(path="sheet", component=lambda: CustomerSheetView(workspace, standing))
     job = ft.Route(
         path="job/:job_id",
         component=lambda: JobView(workspace, standing, preferences),
-        children=[paste, share, leave, section],
+        children=[paste, share, signed, leave, section],
     )
     joins = [
         ft.Route(path=path, component=lambda: JoinView(workspace, workspace.jobs)) for path in ("join", "join/:part")

@@ -16,6 +16,7 @@ from pwa.state.workspace import Preferences, Standing, Workspace
 
 LEAVING = {
     "sheet": "Customer’s sheet (PDF)",
+    "signoff": "Sign-off",
     "share": "To another phone, or as a message",
 }  # route below the job: what the menu calls it
 

@@ -15,6 +15,7 @@ from pwa.services.files import file_name
 from pwa.services.storage import StorageError
 from pwa.sheet.data import Firm
 from pwa.state.sheet import Sheet
+from pwa.state.signoff import DATE, NAME, signed_job
 from pwa.state.workspace import Workspace
 
 log = logging.getLogger("tapwright")
@@ -111,16 +112,19 @@ async def make_pdf(workspace: Workspace, sheet: Sheet, firm: FirmSetting, day: s
 
 
 def _drawn(workspace: Workspace, sheet: Sheet, firm: FirmSetting, day: str) -> Any:
-    from pwa.sheet.content import sheet_of  # they need numpy and what was loaded just now
+    from pwa.sheet.content import Signed, sheet_of  # they need numpy and what was loaded just now
     from pwa.sheet.draw import draw_sheet
 
     assessment = workspace.assessed(sheet.job)
     parts = {section: getattr(assessment, section) for section in sheet.layout.sections}
+    found, choices = signed_job(workspace, sheet), sheet.job.choices
+    signed = found and Signed(found.result, choices.get(NAME, ""), shown_date(choices.get(DATE, "")))
     data = sheet_of(
         sheet.job,
         parts,
         workspace.display(sheet),
         firm.firm(),
+        signed=signed,
         date=shown_date(day),
         day=day,
         paper=paper_of(firm, workspace, sheet),

@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from typing import TYPE_CHECKING
 
 from core.job.answers import Answer, Part
-from core.job.fields import SECTIONS, choice_for, field_for
+from core.job.fields import SECTIONS, choice_for, field_for, sections_of
 from core.job.record import Job
 from pwa.state.display import Display
 
@@ -25,7 +25,7 @@ def summary_text(job: Job, assessment: Assessment, display: Display) -> str:
     Where no section has an answer, what is missing stands in its place.
     """
     blocks = ["\n".join(filter(None, (job.name or "Job without a name", job.place)))]
-    parts: dict[str, Part] = {key: getattr(assessment, key) for key in SECTIONS}
+    parts: dict[str, Part] = {key: getattr(assessment, key) for key in sections_of(job.choices)}
     answered = {key: part for key, part in parts.items() if part.headline is not None}
     blocks += [_section(SECTIONS[key], part, display) for key, part in (answered or parts).items()]
     assumed = _assumed(answered.values(), display)

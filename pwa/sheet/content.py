@@ -10,10 +10,11 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from decimal import Decimal
 from itertools import zip_longest
+from typing import TYPE_CHECKING
 
 from core.job.answers import Amount, Answer, Caution, Part
 from core.job.comparison import LEFT_OUT, Column, Comparison, Saving, compare
-from core.job.fields import SECTIONS
+from core.job.fields import sections_of
 from core.job.offer import Offer
 from core.job.prices import PriceBook
 from core.job.record import Job
@@ -22,6 +23,9 @@ from pwa.sheet.data import Beside, Block, Figure, Firm, Said, Scale, Section, Sh
 from pwa.sheet.money import money_text, plain_number
 from pwa.sheet.technical import technical_sections
 from pwa.state.display import Display
+
+if TYPE_CHECKING:
+    from core.job.assessment import Assessment
 
 FOUND = ("water", "demand", "scale")  # sections that say how things are; all others say what is proposed
 DOES = ("interval", "sodium", "sodium_added", "potassium")  # answers a customer asks for
@@ -80,9 +84,9 @@ def sheet_of(
     )
 
 
-def parts_of(assessment: object) -> dict[str, Part]:
+def parts_of(assessment: Assessment) -> dict[str, Part]:
     """The parts of an assessment by section, in the order of the visit."""
-    return {key: getattr(assessment, key) for key in SECTIONS}
+    return {key: getattr(assessment, key) for key in sections_of(assessment.job.choices)}
 
 
 def _section(title: str, blocks: Iterable[Block]) -> Section | None:

@@ -131,8 +131,8 @@ def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand
         words, tone = say("Next to no lime falls out in the heater at {heater}.", heater=degrees), "good"
     else:
         words = say(
-            "So much lime can fall out in the heater at {heater}: {low} to {high}, by the constants and its form; an "
-            "upper bound.",
+            "So much lime a year in the heater at {heater}: {low} to {high}, by the constants and its form; an upper "
+            "bound.",
             heater=degrees,
             low=Amount(low, "kg", "mass"),
             high=Amount(high, "kg", "mass"),

@@ -122,7 +122,7 @@ def test_a_sample_opens_as_a_job(site, serve, visit):
     tap(seen, "Examples")
     tap(seen, "Mill Quay 12")
     seen.wait_for("Set the valve until 8.0")
-    seen.wait_for("lime can fall out")
+    seen.wait_for("So much lime a year")
 
     seen.screenshot("journey-sample")
     seen.reload("Set the valve until 8.0")

@@ -10,9 +10,12 @@ import flet as ft
 from core.job.answers import Answer, Part
 from pwa import theme
 from pwa.components.guard import guarded
+from pwa.components.how_sure import sure_line
 from pwa.components.tone import TONES, ToneLine
+from pwa.components.words import Note
 from pwa.state.display import Display
 from pwa.state.sheet import PartState
+from pwa.state.sureness import SureState
 
 LINE = 26.0
 TRACK = 4.0
@@ -183,14 +186,18 @@ def _badge(name: str) -> ft.Control:
 
 
 @guarded
-def AnswerStrip(state: PartState, title: str, shown: Callable[[], Display]) -> ft.Control:
-    """The strip that stays in sight while entries change: the section's headline; `shown` says in which units."""
+def AnswerStrip(
+    state: PartState, title: str, shown: Callable[[], Display], sure: SureState | None = None
+) -> ft.Control:
+    """The strip that stays in sight while entries change: the section's headline, and how sure it is.
+
+    `shown` says in which units; `sure` is None for a section of which that is not worked out.
+    """
     part, display = state.part, shown()
-    content = (
-        ft.Text("Getting the calculator ready …")
-        if part is None
-        else AnswerBlock(part, display, brief=display.text_scale >= BRIEF_FROM)
-    )
+    brief = display.text_scale >= BRIEF_FROM
+    content = ft.Text("Getting the calculator ready …") if part is None else AnswerBlock(part, display, brief=brief)
+    if sure is not None and not brief and part is not None and part.headline is not None:
+        content = ft.Column(spacing=2, controls=[content, Note(sure_line(sure, display) or " ")])
     return ft.Container(
         bgcolor=ft.Colors.SURFACE_CONTAINER_LOWEST,
         padding=ft.Padding.symmetric(horizontal=theme.PAD, vertical=theme.GAP),

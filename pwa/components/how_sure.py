@@ -15,6 +15,16 @@ from pwa.state.sureness import Next, SureState
 ENOUGH = "No single further reading would change this much."
 
 
+WORKING = "Working out how sure this is …"
+
+
+def sure_line(state: SureState, display: Display) -> str:
+    """How sure a section's answer is, in one line for the strip; "" where nothing is doubted."""
+    if state.stale or not state.known:
+        return WORKING
+    return next(iter([*[display.say(phrase) for phrase in state.odds], *_band(state, display)]), "")
+
+
 @guarded
 def HowSure(state: SureState, job_id: str, shown: Callable[[], Display]) -> ft.Control:
     """What is known of a section's sureness; greyed while it belongs to what stood there before."""

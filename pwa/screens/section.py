@@ -17,6 +17,7 @@ from pwa.components.words import Disclosure
 from pwa.screens.sources import Limits, SourceList
 from pwa.state.display import Display
 from pwa.state.sheet import Layout, PartState, Sheet
+from pwa.state.sureness import PLANS
 from pwa.state.workspace import Preferences, Workspace
 
 CHOICE_FIRST = ("dose",)  # sections in which a decision says which entries matter
@@ -38,7 +39,9 @@ def SectionPane(sheet: Sheet, section: str, workspace: Workspace, preferences: P
         horizontal_alignment=ft.CrossAxisAlignment.STRETCH,
         controls=[
             *([Banners(workspace.standing, workspace)] if sheet.locked else []),
-            AnswerStrip(sheet.parts[section], SECTIONS[section], shown),
+            AnswerStrip(
+                sheet.parts[section], SECTIONS[section], shown, sheet.sure[section] if section in PLANS else None
+            ),
             ft.ListView(
                 expand=True,
                 padding=theme.PAD,

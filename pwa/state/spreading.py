@@ -64,6 +64,8 @@ class Spreading:
             await self._work_on(sheet, plans)
         except Exception:
             log.exception("how sure the answers are could not be worked out")
+            for state in sheet.sure.values():
+                state.give_up()
 
     async def _work_on(self, sheet: Sheet, plans: list[Plan]) -> None:
         for plan in plans:

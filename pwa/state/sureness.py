@@ -75,6 +75,11 @@ class SureState:
         self.tried = any(found.alone.values())
         self.known, self.stale = bool(found.plain[self.key].answers), False
 
+    def give_up(self) -> None:
+        """Say nothing, rather than that it is being worked out."""
+        self.band, self.odds, self.next, self.tried = None, (), None, False
+        self.known, self.stale = True, False
+
 
 def _band(part: Part, found: Spread) -> tuple[Amount, Amount] | None:
     headline = part.headline

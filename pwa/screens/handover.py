@@ -77,7 +77,7 @@ def Codes(sheet: Sheet, address: str) -> ft.Control:
     at, set_at = ft.use_state(0)
     made, why_not = ft.use_memo(lambda: _links(sheet, address), [sheet.job, address])
     place = min(at, max(len(made) - 1, 0))
-    code = ft.use_memo(lambda: _drawn(*made[place]) if made else "", [made, place])
+    code = ft.use_memo(lambda: _drawn(*made[place]) if made else b"", [made, place])
     head = [
         Heading("To another phone, without a network"),
         Note("The other phone reads the code with its camera. This app must have been opened there once before."),
@@ -123,10 +123,10 @@ def _links(sheet: Sheet, address: str) -> tuple[list[tuple[str, str]], str]:
         return [], str(error)
 
 
-def _drawn(prefix: str, part: str) -> str:
+def _drawn(prefix: str, part: str) -> bytes:
     from pwa.services.handover_qr import qr_code  # the drawing of codes is loaded when it is asked for
 
-    return qr_code(prefix, part).svg
+    return qr_code(prefix, part).png
 
 
 def _message(sheet: Sheet, workspace: Workspace) -> list[ft.Control]:

@@ -1,7 +1,12 @@
 """Handing a job over and taking one in, on a page without a browser."""
 
+import io
+
 import flet as ft
+import numpy as np
 import pytest
+import zxingcpp
+from PIL import Image
 
 from core.job.record import Job
 from pwa.services.files import PickedFile
@@ -31,7 +36,9 @@ def test_the_share_screen_shows_codes_and_the_message():
         job_id = await job_on(app)
         await app.go(f"/job/{job_id}/share")
         picture = app.page.find(ft.Image)
-        assert picture.src.startswith("<svg")
+        ((_, part),) = links(app.workspace.sheets[job_id].job, ADDRESS)
+        (read,) = zxingcpp.read_barcodes(np.asarray(Image.open(io.BytesIO(picture.src)).convert("L")))
+        assert read.text.endswith(f"#/join/{part}")
         assert app.page.reads("Save as a file")
         assert app.page.reads("Heron Lane 4\n\nWATER: Total hardness")
         await app.page.click(app.page.find(ft.OutlinedButton, content="Save as a file"))

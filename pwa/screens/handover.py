@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import flet as ft
 
+from core.job.fields import field_for
+from core.job.record import Job
 from pwa import theme
 from pwa.components.box import Box
 from pwa.components.guard import guarded
@@ -14,9 +16,14 @@ from pwa.screens.job import use_sheet
 from pwa.services.handover import HandoverError, file_of, links
 from pwa.services.sharing import FletShare, SharingError, copy_action, share_action
 from pwa.services.summary import summary_text
+from pwa.state.display import unit_shown
 from pwa.state.handover import Came, join, take_in
 from pwa.state.sheet import Sheet
 from pwa.state.workspace import JobList, Standing, Workspace
+from pwa.text import format_quantity
+
+MOST_SHOWN = 12  # entries of a job that arrived
+LONGEST = 200  # characters of its name and place
 
 
 @guarded
@@ -191,9 +198,11 @@ def _came(came: Came | None, workspace: Workspace) -> list[ft.Control]:
             ft.context.page.navigate(f"/job/{job_id}")
 
     count = len(job.entries)
-    lines: list[ft.Control] = [ft.Text(named(job.name), theme_style=ft.TextThemeStyle.TITLE_MEDIUM)]
-    lines += [ft.Text(job.place)] if job.place else []
-    lines += [Note(f"{count} {'entry' if count == 1 else 'entries'}."), Note(arrived.sentence)]
+    cut = {"max_lines": 2, "overflow": ft.TextOverflow.ELLIPSIS}  # whatever was sent, the button stays near
+    lines: list[ft.Control] = [ft.Text(named(job.name)[:LONGEST], theme_style=ft.TextThemeStyle.TITLE_MEDIUM, **cut)]
+    lines += [ft.Text(job.place[:LONGEST], **cut)] if job.place else []
+    lines += [Note(f"{count} {'entry' if count == 1 else 'entries'}."), *_entries(job, workspace)]
+    lines.append(Note(arrived.sentence, max_lines=6, overflow=ft.TextOverflow.ELLIPSIS))
     label = "Open it" if arrived.kind == "same" else "Add to the list"
     lines.append(ft.Row(controls=[ft.FilledButton(label, expand=True, height=theme.TOUCH + 8, on_click=add)]))
     return [
@@ -205,3 +214,16 @@ def _came(came: Came | None, workspace: Workspace) -> list[ft.Control]:
             content=ft.Column(spacing=theme.GAP, controls=lines),
         )
     ]
+
+
+def _entries(job: Job, workspace: Workspace) -> list[ft.Control]:
+    """The first entries of a job that arrived, as they were entered there."""
+    decimal = workspace.display().decimal
+    shown = []
+    for key in list(job.entries)[:MOST_SHOWN]:
+        field, entry = field_for(key), job.entries[key]
+        if field is not None and entry.value is not None:
+            shown.append(
+                ft.Text(f"{field.label}: {unit_shown(format_quantity(entry.value, entry.unit[:20], decimal))}")
+            )
+    return shown

@@ -122,7 +122,7 @@ def leave_menu(sheet: Sheet | None) -> list[ft.Control]:
         return lambda event: ft.context.page.navigate(f"/job/{sheet.job.id}/{place}")
 
     menu = ft.PopupMenuButton(
-        tooltip="Hand over",
+        tooltip="Sheet, sign-off, other phone",
         content=ft.Container(
             height=theme.TOUCH,
             padding=ft.Padding.symmetric(horizontal=theme.PAD),

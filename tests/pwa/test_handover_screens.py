@@ -78,6 +78,7 @@ def test_a_link_is_shown_and_joined_only_when_asked():
             await other.go("/")
             await other.go(f"/join/{part.lower()}")
             assert other.page.reads("Heron Lane 4")
+            assert other.page.reads("Total hardness: 22")
             assert len(other.workspace.jobs.rows) == rows
             await other.page.click(other.page.find(ft.FilledButton, content=label))
             assert [row.id for row in other.workspace.jobs.rows] == [job_id]

@@ -62,7 +62,7 @@ REFERENCES: dict[str, Reference] = {
         "from memory",
     ),
     "CRC-HANDBOOK": Reference(
-        "CRC Handbook of Chemistry and Physics, solubility of inorganic compounds; concentrative properties of solutions",
+        "CRC Handbook of Chemistry and Physics: solubility of compounds; concentrative properties of solutions",
         "from memory",
     ),
     "DANTZIG63": Reference(

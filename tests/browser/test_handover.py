@@ -90,3 +90,39 @@ def test_a_job_goes_to_another_phone_and_its_sheet_to_the_customer(site, playwri
             tap(two, "Back")
             two.wait_for("Job without a name")
             assert two.errors == []
+
+
+def scroll_to(visit: Visit, text: str, step: float = 350):
+    """Scroll until a text is in the tree."""
+    for _ in range(20):
+        if any(text in found for found in visit.texts()):
+            return
+        visit.page.mouse.move(300, 600)
+        visit.page.mouse.wheel(0, step)
+        visit.page.wait_for_timeout(400)
+    raise AssertionError(f"{text!r} did not appear. There is: {visit.texts()}")
+
+
+def test_a_leaking_bypass_is_told_from_an_exhausted_bed(site, serve, visit):
+    """Hard from the start: a leak. Soft at first and hard after too much water: the bed ran out."""
+    server = serve(site)
+    seen = visit()
+    seen.open(server.url, "Hardness reading")
+    plain_job(seen)
+    tap(seen, "Back")
+    seen.wait_for("Name of the job")
+    choose(seen, "Hand over", "Sign-off")
+    seen.wait_for("Softened, after a fresh regeneration")
+    for fresh, late, since, cause in (("3", "3", "500", "leaks ("), ("0.2", "9", "3000", "The bed ran out")):
+        for label, text in (
+            ("Raw water", "22"),
+            ("Softened, after a fresh regeneration", fresh),
+            ("Softened, now or at the end of the run", late),
+            ("Water since the regeneration", since),
+        ):
+            scroll_to(seen, label, -350)
+            enter(seen, label, text)
+        scroll_to(seen, cause)
+        seen.page.wait_for_timeout(500)
+        seen.screenshot(f"signoff-{since}")
+    assert seen.errors == []

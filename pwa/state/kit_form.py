@@ -65,6 +65,8 @@ class KitForm:
     def kit(self, own: tuple[Kit, ...]) -> Kit:
         """The kit as described; InputError says what is missing. `own` are those there are already."""
         name = self.name.strip()
+        if not name:
+            raise InputError("words", name, "Give the kit a name.")
         taken = [kit.words.casefold() for kit in own if kit.words != self.editing]
         if name.casefold() in taken:
             raise InputError("words", name, f"There is a kit called “{name}” already.")

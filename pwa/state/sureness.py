@@ -28,8 +28,8 @@ class Plan:
     at_once: int  # cases between two looks at the keyboard
 
 
-# One case takes some 20 ms in a phone's browser, of the heater's lime five times that.
-SIZING = Plan(("water", "demand", "softener"), draws=60, alone=6, at_once=1)
+# One case takes some 10 ms in a browser on a desk, of the heater's lime ten times that; on a phone longer.
+SIZING = Plan(("water", "demand", "softener"), draws=80, alone=6, at_once=1)
 PLANS = {
     "water": SIZING,
     "demand": SIZING,

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from math import isfinite
 
-from core.chemistry import Solution, precipitation_potential, scale_per_year, scale_potential, stability
+from core.chemistry import Solution, precipitation_potential, scale_per_year, scale_potential, speciate, stability
 from core.chemistry.index_bands import SCALES
 from core.errors import InputError
 from core.job import scale_water
@@ -92,6 +92,7 @@ def _answers(ledger: Ledger, water: Solution, heater: float, demand: Demand) -> 
     step = ledger.working.step
     hot = step(scale_water.heated, solution=water, temp_c=heater)
     potential = step(precipitation_potential, solution=hot)
+    _note_ranges(ledger, water, hot)
     cold_index, hot_index = (step(scale_water.calcite_index, solution=solution) for solution in (water, hot))
     answers = [
         *_scale_a_year(ledger, water, heater, demand, potential),
@@ -110,6 +111,13 @@ def _answers(ledger: Ledger, water: Solution, heater: float, demand: Demand) -> 
     if not found:
         ledger.problems["water.ph"] = Problem("water.ph", "error", NO_SUCH_WATER)
     return found
+
+
+def _note_ranges(ledger: Ledger, *waters: Solution) -> None:
+    """Say where a water lies outside the range its constants were fitted in; it is computed all the same."""
+    said = dict.fromkeys(note for water in waters for note in speciate(water).notes)
+    if said:
+        ledger.problems["water.conductivity"] = Problem("water.conductivity", "warning", " ".join(said), "PB82")
 
 
 def _scale_a_year(ledger: Ledger, water: Solution, heater: float, demand: Demand, potential: float) -> list[Answer]:

@@ -168,6 +168,19 @@ def test_water_that_is_not_softened_is_heated_too():
     assert value(whole, "scale_year") == value(half, "scale_year")
 
 
+def test_a_water_outside_the_range_of_the_constants_is_said():
+    """A brine is computed and flagged, with the range named; an ordinary water is not flagged."""
+    plain = {"water__ph": Entry(7.3, "", "measured"), "water__alkalinity": Entry(5.0, "meq/L", "measured")}
+    brine = plain | {"water__conductivity": Entry(120_000.0, "µS/cm", "measured")}
+    flagged = [
+        [problem.text for problem in assess(job(**entries)).scale.problems if problem.level == "warning"]
+        for entries in (plain, brine)
+    ]
+
+    assert flagged[0] == []
+    assert any("mol/kg" in text for text in flagged[1])
+
+
 @pytest.mark.parametrize("ph", [0.0, 1.0, 13.0, 14.0])
 def test_a_water_that_cannot_be_says_so(ph):
     """pH and alkalinity that contradict each other: a sentence, not an empty card."""

@@ -92,13 +92,13 @@ def test_a_job_goes_to_another_phone_and_its_sheet_to_the_customer(site, playwri
             assert two.errors == []
 
 
-def scroll_to(visit: Visit, text: str, step: float = 350):
+def scroll_to(visit: Visit, text: str):
     """Scroll until a text is in the tree."""
     for _ in range(20):
         if any(text in found for found in visit.texts()):
             return
         visit.page.mouse.move(300, 600)
-        visit.page.mouse.wheel(0, step)
+        visit.page.mouse.wheel(0, 350)
         visit.page.wait_for_timeout(400)
     raise AssertionError(f"{text!r} did not appear. There is: {visit.texts()}")
 
@@ -113,16 +113,19 @@ def test_a_leaking_bypass_is_told_from_an_exhausted_bed(site, serve, visit):
     seen.wait_for("Name of the job")
     choose(seen, "Hand over", "Sign-off")
     seen.wait_for("Softened, after a fresh regeneration")
-    for fresh, late, since, cause in (("3", "3", "500", "leaks ("), ("0.2", "9", "3000", "The bed ran out")):
+    for fresh, late, since, cause in (
+        ("3", "3", "500", "1. A bypass at the softener"),
+        ("0.2", "9", "3000", "1. The bed ran out"),
+    ):
         for label, text in (
             ("Raw water", "22"),
             ("Softened, after a fresh regeneration", fresh),
             ("Softened, now or at the end of the run", late),
             ("Water since the regeneration", since),
         ):
-            scroll_to(seen, label, -350)
             enter(seen, label, text)
         scroll_to(seen, cause)
-        seen.page.wait_for_timeout(500)
         seen.screenshot(f"signoff-{since}")
+        seen.page.mouse.wheel(0, -9000)
+        seen.page.wait_for_timeout(500)
     assert seen.errors == []

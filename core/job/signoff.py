@@ -208,7 +208,9 @@ def _would_tell(promise: _Promise, reading: Measured, work: Working) -> Phrase:
     """How good a reading would settle it, or how many of the same kind."""
     limit = min((promise.low, promise.high), key=lambda end: abs(reading.value - end))
     needed = work.step(doubt_that_tells, value=reading.value, limit=limit)
-    if needed <= promise.doubt or needed * BAND < ON_THE_LIMIT * abs(limit):
+    if needed <= promise.doubt:
+        return say("What was promised rests on a reading less sure than this asks for: no kit will tell now.")
+    if needed * BAND < ON_THE_LIMIT * abs(limit):
         return say("The reading lies on the limit: no kit will tell. Agree on it with the customer.")
     width = Amount(BAND * needed, promise.unit, promise.quantity)
     text = "A kit that is sure to ± {width} would tell"

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 
 import flet as ft
 
@@ -14,6 +13,7 @@ from pwa.components.how_sure import sure_line
 from pwa.components.tone import TONES, ToneLine
 from pwa.components.words import Note
 from pwa.state.display import Display
+from pwa.state.line import Scale
 from pwa.state.sheet import PartState
 from pwa.state.sureness import SureState
 
@@ -22,26 +22,6 @@ TRACK = 4.0
 BAND = 12.0
 BRIEF_FROM = 2.0  # text scale from which the strip leaves its line out: entries must stay in sight
 APART = 1.1  # of the line's 2, between ticks whose names share a line
-
-
-@dataclass(frozen=True, slots=True)
-class Scale:
-    """Where a value falls on a line from left (-1) to right (1)."""
-
-    lowest: float
-    highest: float
-
-    @classmethod
-    def of(cls, values: list[float]) -> Scale:
-        """A scale on which all values have their place, with some room at both ends."""
-        low, high = min(values), max(values)
-        apart = high - low if high - low > 1e-6 * abs(high) else 0.0  # a blend at its limit misses it by a hair
-        room = apart * 0.12 or abs(high) * 0.5 or 1.0
-        return cls(max(0.0, low - room) if low >= 0.0 else low - room, high + room)
-
-    def x(self, value: float) -> float:
-        """The place of a value, -1 to 1."""
-        return 2.0 * (value - self.lowest) / (self.highest - self.lowest) - 1.0
 
 
 def AnswerLine(answer: Answer, display: Display) -> ft.Control | None:

@@ -22,6 +22,7 @@ from core.job.signoff import SignOff
 from pwa.sheet.data import Beside, Block, Figure, Firm, Said, Scale, Section, SheetData, Signature, Table, Text
 from pwa.sheet.money import money_text, plain_number
 from pwa.sheet.technical import technical_sections
+from pwa.state import line
 from pwa.state.display import Display
 
 if TYPE_CHECKING:
@@ -31,7 +32,6 @@ FOUND = ("water", "demand", "scale")  # sections that say how things are; all ot
 DOES = ("interval", "sodium", "sodium_added", "potassium")  # answers a customer asks for
 IN_COSTS = ("salt_year", "water_year")  # those that stand among the costs where there is an offer
 SIGNS = {"met": "✓", "not met": "✗", "cannot tell": "!"}
-ROOM = 0.12  # of the span, left free at both ends of an answer's line
 
 LOCAL = (
     "Connection, backflow protection and the drain are for a licensed installer under the local code, which comes "
@@ -107,13 +107,10 @@ def scale_of(answer: Answer, display: Display) -> Scale | None:
         return None
     here = answer.amount.value
     values = [here, *(answer.band or ()), *(mark.at.value for mark in marks)]
-    low, high = min(values), max(values)
-    room = (high - low) * ROOM or abs(high) * 0.5 or 1.0
-    start = max(0.0, low - room) if low >= 0.0 else low - room
-    span = high + room - start
+    scale = line.Scale.of(values)
 
     def place(value: float) -> float:
-        return (value - start) / span
+        return (scale.x(value) + 1.0) / 2.0
 
     ticks = tuple((place(mark.at.value), f"{mark.name} {display.show(mark.at)}") for mark in marks)
     band = (place(answer.band[0]), place(answer.band[1])) if answer.band else None

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, replace
-from typing import TypeVar
+from typing import Any, TypeVar
 
 import flet as ft
 
@@ -161,6 +161,7 @@ class Sheet:
         self.signoff = Turn()
         self.findings = Findings()
         self.sure = {key: SureState(key) for key in SECTIONS}
+        self.assessment: Any = None  # of the job as it is now; made when first asked for
         self.locked = False  # while another tab does the saving
         self.own_kits: tuple[Kit, ...] = ()
         self.doubt_of: Callable[[str, Entry], Phrase | None] = lambda key, entry: None  # until it can be computed

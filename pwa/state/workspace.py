@@ -312,10 +312,16 @@ class Workspace:
     def _assess_sheet(self, sheet: Sheet, sections: Any) -> None:
         if self._assess is None:
             return
-        assessment = self._assess(sheet.job)
+        assessment = self._assessment_of(sheet)
         sheet.take({section: _part_of(assessment, section) for section in sections})
         for section in sections:
             sheet.say_doubts(section)
+
+    def _assessment_of(self, sheet: Sheet) -> Any:
+        """The assessment of a sheet's job: one for each state of the job, so that no part of it is made twice."""
+        if sheet.assessment is None or sheet.assessment.job is not sheet.job:
+            sheet.assessment = self._assess(sheet.job)
+        return sheet.assessment
 
     def _check_sheet(self, sheet: Sheet) -> None:
         if self._check is not None:

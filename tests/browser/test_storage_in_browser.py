@@ -361,7 +361,6 @@ def browser_process(profile: Path) -> int:
     raise AssertionError("The browser is not among the processes.")
 
 
-@pytest.mark.skipif(not Path("/proc/self/cmdline").exists(), reason="finds the browser's process in /proc")
 def test_a_killed_browser_loses_nothing_acknowledged(playwright, url, tmp_path):
     """Whatever save had returned when the whole browser was killed is there after it is started again."""
     chance = random.Random(2)
